@@ -1,0 +1,94 @@
+import { readSessionCookie, validateSession } from './authentication';
+import { pool, prepared } from './database';
+import { makeScope, type Grant, type Scope } from './scope';
+
+/** Who is signed in. */
+export interface SignedIn {
+  personId: string;
+  name: string;
+  email: string;
+  emailVerified: boolean;
+  isOperator: boolean;
+  sessionId: string;
+}
+
+/** What the address names. */
+export interface OrgInfo {
+  id: string;
+  slug: string;
+  name: string;
+  timeZone: string;
+  currency: string;
+  contact: string;
+  isDemo: boolean;
+  isSuspended: boolean;
+}
+export interface TournamentInfo {
+  id: string;
+  slug: string;
+  name: string;
+  shortName: string;
+  /** YYYY-MM-DD. */
+  day: string;
+  /** HH:MM on the wall. */
+  startsAt: string;
+  endsAt: string;
+  isPublished: boolean;
+}
+
+export interface RequestScope {
+  person: SignedIn | null;
+  org: OrgInfo | null;
+  tournament: TournamentInfo | null;
+  scope: Scope | null;
+  /** A Set-Cookie value to send along, when the session's idle limit moved on or it ended. */
+  cookie: string | null;
+}
+
+const SLUG = /^[a-z0-9](-?[a-z0-9])*$/;
+
+/** True for a text that can be an address part. */
+export function isSlug(text: string | undefined): text is string {
+  return text !== undefined && text.length <= 64 && SLUG.test(text);
+}
+
+/**
+ * Session → person → organization → grants → scope, for one request. Used by the pages, the
+ * endpoints and the live streams alike; two round trips.
+ */
+export async function resolveRequest(cookieHeader: string | null | undefined, orgSlug?: string, tournamentSlug?: string): Promise<RequestScope> {
+  const out: RequestScope = { person: null, org: null, tournament: null, scope: null, cookie: null };
+  const sessionId = readSessionCookie(cookieHeader);
+  if (sessionId) {
+    const found = await validateSession(sessionId);
+    out.cookie = found.cookie;
+    if (found.user) {
+      out.person = {
+        personId: found.user.id,
+        name: found.user.name,
+        email: found.user.email,
+        emailVerified: found.user.emailVerifiedAt !== null,
+        isOperator: found.user.isOperator,
+        sessionId,
+      };
+    }
+  }
+  if (!isSlug(orgSlug)) return out;
+  const { rows } = await pool().query(
+    prepared('resolve_scope', 'select resolve_scope($1, $2, $3) as r', [orgSlug, isSlug(tournamentSlug) ? tournamentSlug : null, out.person?.personId ?? null]),
+  );
+  const r = rows[0]?.r as { org: OrgInfo; tournament: TournamentInfo | null; grants: Grant[] } | null;
+  if (!r) return out;
+  out.org = r.org;
+  out.tournament = r.tournament;
+  out.scope = makeScope({
+    orgId: r.org.id,
+    orgSlug: r.org.slug,
+    actor: out.person
+      ? { kind: 'person', personId: out.person.personId, name: out.person.name }
+      : { kind: 'public', personId: null, name: 'the public' },
+    grants: r.grants,
+    tournamentId: r.tournament?.id ?? null,
+  });
+  return out;
+}
