@@ -51,8 +51,9 @@ export const onRequest = defineMiddleware(async (context, next) => {
       if (name !== 'content-security-policy') response.headers.set(name, value);
     }
   }
-  if (locals.keepBytes && response.status === 200) {
-    const { topics, until } = locals.keepBytes;
+  const keep = locals.keepBytes as App.Locals['keepBytes'];
+  if (keep && response.status === 200) {
+    const { topics, until } = keep;
     response.headers.set('x-keep-bytes', JSON.stringify({ topics, until: until?.toISOString() ?? null }));
   } else if (!response.headers.has('cache-control') && (response.headers.get('content-type') ?? '').startsWith('text/html')) {
     response.headers.set('cache-control', 'private, no-cache');
