@@ -133,11 +133,12 @@ export interface ScoreScale {
 export type PartsOf<Setup, Parts> = { [Key in keyof Parts & string]: EventPart<Setup, Key, Parts[Key]> }[keyof Parts & string];
 
 /**
- * A kind of event. `Setup` is its set-up, `Parts` maps each part's key to its value.
+ * A kind of event. `Setup` is its set-up, `Parts` maps each part's key to its value (a type, not an interface, so that it fits
+ * the registry's Record).
  *
  * Written with method syntax on purpose: that is what lets every module stand in the registry as {@link AnyEventModule}.
  */
-export interface EventModule<Setup, Parts, Key extends string = string> {
+export interface EventModule<Setup, Parts extends Record<string, unknown>, Key extends string = string> {
   /** Stable, stored; also the folder's name. */
   key: Key;
   name: string;
@@ -168,4 +169,6 @@ export interface EventModule<Setup, Parts, Key extends string = string> {
  * A module whose types are forgotten, as the registry hands it out. Put a stored set-up or part through the module's schema
  * first: what comes out is what its other functions take.
  */
-export type AnyEventModule = EventModule<unknown, Record<string, unknown>>;
+export interface AnyEventModule extends EventModule<unknown, Record<string, unknown>> {
+  key: string;
+}
