@@ -35,6 +35,7 @@ export default defineConfig({
           name: 'db',
           environment: 'node',
           include: ['tests/db/**/*.test.ts'],
+          globalSetup: ['tests/setup/database.ts'],
           pool: 'forks',
           testTimeout: 20_000,
           hookTimeout: 60_000,
@@ -47,6 +48,7 @@ export default defineConfig({
           name: 'e2e',
           environment: 'node',
           include: ['tests/e2e/**/*.test.ts'],
+          globalSetup: ['tests/setup/database.ts'],
           pool: 'forks',
           // Each file has an application server and a browser of its own.
           maxWorkers: 2,
