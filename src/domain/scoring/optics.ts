@@ -3,7 +3,7 @@
  * score = wA·max(0, 1 − d/R) + wB·used/available + wT·test/testMax.
  */
 import { DomainError } from '../domain-error';
-import { compareExact, exact, fromRatioText, isHalfStep, ONE, roundHalfUp, toRatioText, tryExact, ZERO, type Exact } from '../exact';
+import { compareExact, exact, isHalfStep, ONE, roundHalfUp, toRatioText, tryExact, ZERO, type Exact } from '../exact';
 import { competitionRank, placePoints, type TeamStatus } from '../ranking/places';
 
 /** Decimal text ("12.5") or a whole number. */
@@ -58,7 +58,13 @@ export type OpticsTieBreak = (typeof OPTICS_TIE_BREAKS)[number];
 
 const isCount = (value: unknown): value is number => Number.isInteger(value) && (value as number) >= 0;
 
-function checkRules(rules: OpticsRules): { R: Exact; testMax: Exact } {
+/** Rules that have been checked, with their decimals read. */
+interface CheckedRules extends Pick<OpticsRules, 'wA' | 'wB' | 'wT' | 'barriersAvailable'> {
+  R: Exact;
+  testMax: Exact;
+}
+
+function checkRules(rules: OpticsRules): CheckedRules {
   const { wA, wB, wT, barriersAvailable } = rules;
   if (![wA, wB, wT].every(isCount) || wA + wB + wT !== 100) throw new DomainError('bad-weights');
   const R = tryExact(rules.R);
@@ -66,7 +72,32 @@ function checkRules(rules: OpticsRules): { R: Exact; testMax: Exact } {
   const testMax = tryExact(rules.testMax);
   if (testMax === null || compareExact(testMax, ZERO) <= 0) throw new DomainError('bad-test');
   if (!isCount(barriersAvailable) || barriersAvailable < 1) throw new DomainError('bad-barriers');
-  return { R, testMax };
+  return { wA, wB, wT, barriersAvailable, R, testMax };
+}
+
+/** The exact values of one scored team. */
+interface ExactScore {
+  d: Exact | null;
+  testRaw: Exact;
+  accuracy: Exact;
+  barrier: Exact;
+  test: Exact;
+  score: Exact;
+}
+
+function exactScore(rules: CheckedRules, team: OpticsTeam): ExactScore {
+  const { wA, wB, wT, R, testMax, barriersAvailable } = rules;
+  const d = team.d === null ? null : tryExact(team.d);
+  if (team.d !== null && (d === null || compareExact(d, ZERO) < 0)) throw new DomainError('bad-distance');
+  if (!isCount(team.barriersUsed) || team.barriersUsed > barriersAvailable) throw new DomainError('bad-barriers');
+  const testRaw = tryExact(team.testRaw);
+  if (testRaw === null || compareExact(testRaw, ZERO) < 0 || compareExact(testRaw, testMax) > 0 || !isHalfStep(testRaw)) {
+    throw new DomainError('bad-test');
+  }
+  const accuracy = d === null || compareExact(d, R) >= 0 ? ZERO : ONE.sub(d.div(R));
+  const barrier = exact(team.barriersUsed).div(barriersAvailable);
+  const test = testRaw.div(testMax);
+  return { d, testRaw, accuracy, barrier, test, score: accuracy.mul(wA).add(barrier.mul(wB)).add(test.mul(wT)) };
 }
 
 /**
@@ -76,20 +107,7 @@ function checkRules(rules: OpticsRules): { R: Exact; testMax: Exact } {
  *   0..available; `bad-test` test outside 0..testMax or not a multiple of 1/2.
  */
 export function opticsScore(input: { rules: OpticsRules; team: OpticsTeam }): OpticsScore {
-  const { rules, team } = input;
-  const { R, testMax } = checkRules(rules);
-  const d = team.d === null ? null : tryExact(team.d);
-  if (team.d !== null && (d === null || compareExact(d, ZERO) < 0)) throw new DomainError('bad-distance');
-  if (!isCount(team.barriersUsed) || team.barriersUsed > rules.barriersAvailable) throw new DomainError('bad-barriers');
-  const testRaw = tryExact(team.testRaw);
-  if (testRaw === null || compareExact(testRaw, ZERO) < 0 || compareExact(testRaw, testMax) > 0 || !isHalfStep(testRaw)) {
-    throw new DomainError('bad-test');
-  }
-
-  const accuracy = d === null || compareExact(d, R) >= 0 ? ZERO : ONE.sub(d.div(R));
-  const barrier = exact(team.barriersUsed).div(rules.barriersAvailable);
-  const test = testRaw.div(testMax);
-  const score = accuracy.mul(rules.wA).add(barrier.mul(rules.wB)).add(test.mul(rules.wT));
+  const { accuracy, barrier, test, score } = exactScore(checkRules(input.rules), input.team);
   return {
     accuracy: toRatioText(accuracy),
     barrier: toRatioText(barrier),
@@ -136,9 +154,9 @@ export function opticsRank(
   if (new Set(order).size !== order.length || !order.every((key) => OPTICS_TIE_BREAKS.includes(key))) {
     throw new DomainError('bad-tie-break');
   }
-  checkRules(rules);
+  const checked = checkRules(rules);
 
-  const scored: { team: string; result: OpticsScore; keys: OpticsKeys }[] = [];
+  const scored: { team: string; keys: OpticsKeys }[] = [];
   const others: Record<'dns' | 'dq', OpticsRankRow[]> = { dns: [], dq: [] };
   for (const team of teams) {
     const status = team.status ?? 'scored';
@@ -146,15 +164,14 @@ export function opticsRank(
       const points = placePoints(status, null, fieldSize);
       others[status].push({ team: team.team, status, score: null, display: null, place: null, points });
     } else if (status === 'scored') {
-      const result = opticsScore({ rules, team });
+      const { score, d, testRaw } = exactScore(checked, team);
       scored.push({
         team: team.team,
-        result,
         keys: {
-          score: fromRatioText(result.score),
-          distance: tryExact(team.d),
+          score,
+          distance: d,
           barriersUsed: exact(team.barriersUsed),
-          test: exact(team.testRaw),
+          test: testRaw,
           mirrorsUsed: tryExact(team.mirrorsUsed),
           timeUsed: tryExact(team.timeUsed),
         },
@@ -172,8 +189,9 @@ export function opticsRank(
     return 0;
   };
   const rows = competitionRank(scored, compare).map(({ item, place }): OpticsRankRow => {
-    const { score, display } = item.result;
-    return { team: item.team, status: 'scored', score, display, place, points: placePoints('scored', place, fieldSize) };
+    const { score } = item.keys;
+    const points = placePoints('scored', place, fieldSize);
+    return { team: item.team, status: 'scored', score: toRatioText(score), display: roundHalfUp(score, 2), place, points };
   });
   return { rows: [...rows, ...others.dns, ...others.dq] };
 }

@@ -2,9 +2,9 @@
 import { csvNumber, type CsvCell } from '~/domain/csv';
 import { DomainError } from '~/domain/domain-error';
 import { exact, fromRatioText, groupThousands, roundHalfUp, toDecimalText, toRatioText, toShortText, type Exact } from '~/domain/exact';
-import { opticsRank, opticsScore, type OpticsTeam } from '~/domain/scoring/optics';
+import { opticsRank, opticsScore, type OpticsScore, type OpticsTeam } from '~/domain/scoring/optics';
 import { pointsFit, type TestPoints, type TestShape } from '~/domain/scoring/test-points';
-import type { EventModule, EventPart, EventRow, EventScore, EventTeam, ResultColumn, ScoreDetail } from '../contract';
+import type { EventModule, EventPart, EventRow, EventScore, EventTeam, PartFault, ResultColumn, ScoreDetail } from '../contract';
 import { testCells, testPart } from '../test-part';
 import { barriersRangeWords, describeRun, mirrorsRangeWords, opticsRunSchema, readingDistances, type OpticsRun } from './run';
 import { opticsSampleSetups, opticsSampleTeams, type OpticsParts } from './samples';
@@ -13,11 +13,11 @@ import {
   opticsFindings,
   opticsPublic,
   opticsRules,
-  opticsSetupSchema,
   opticsSummary,
   opticsTieBreakWords,
   type OpticsSetup,
 } from './setup';
+import { opticsSetupSchema } from './setup-schema';
 
 const testShape = (setup: OpticsSetup): TestShape => ({ max: setup.testMax, groups: setup.testGroups });
 
@@ -29,90 +29,102 @@ const runPart: EventPart<OpticsSetup, 'run', OpticsRun> = {
   csv: null,
 };
 
-/** Why a kept run does not fit the set-up, or null. */
-function runFault(setup: OpticsSetup, run: OpticsRun): string | null {
-  if (run.mirrorsUsed > setup.mirrorsAllowed) return mirrorsRangeWords(setup);
-  if (run.barriersUsed > setup.barriersStanding) return barriersRangeWords(setup);
-  try {
-    readingDistances(setup, run.reading);
-    return null;
-  } catch (error) {
-    if (error instanceof DomainError) return error.message;
-    throw error;
-  }
+/** What a team has that fits the set-up, and what it lacks. The run comes with its distance. */
+interface Usable {
+  run: { run: OpticsRun; distance: Exact | null } | null;
+  test: TestPoints | null;
+  missing: ('run' | 'test')[];
+  faults: PartFault<'run' | 'test'>[];
 }
 
-const distanceOf = (setup: OpticsSetup, run: OpticsRun): Exact | null => readingDistances(setup, run.reading).shorter;
+function usableParts(setup: OpticsSetup, { run, test }: Partial<OpticsParts>): Usable {
+  const usable: Usable = { run: null, test: null, missing: [], faults: [] };
+  if (run === undefined) {
+    usable.missing.push('run');
+  } else if (run.mirrorsUsed > setup.mirrorsAllowed) {
+    usable.faults.push({ part: 'run', message: mirrorsRangeWords(setup) });
+  } else if (run.barriersUsed > setup.barriersStanding) {
+    usable.faults.push({ part: 'run', message: barriersRangeWords(setup) });
+  } else {
+    try {
+      usable.run = { run, distance: readingDistances(setup, run.reading).shorter };
+    } catch (error) {
+      if (!(error instanceof DomainError)) throw error;
+      usable.faults.push({ part: 'run', message: error.message });
+    }
+  }
+  if (test === undefined) {
+    usable.missing.push('test');
+  } else if (pointsFit(testShape(setup), test)) {
+    usable.test = test;
+  } else {
+    usable.faults.push({ part: 'test', message: `The points no longer fit a test out of ${groupThousands(setup.testMax)} and its groups.` });
+  }
+  return usable;
+}
 
 /** A run and a test as the score takes them. Lengths and points end after a decimal, so the text is exact. */
-function toOpticsTeam(setup: OpticsSetup, id: string, run: OpticsRun | undefined, test: TestPoints | undefined): OpticsTeam {
-  const d = run === undefined ? null : distanceOf(setup, run);
+function toOpticsTeam(id: string, { run, test }: Pick<Usable, 'run' | 'test'>): OpticsTeam {
   return {
     team: id,
-    d: d === null ? null : toDecimalText(d),
-    barriersUsed: run?.barriersUsed ?? 0,
+    d: run?.distance == null ? null : toDecimalText(run.distance),
+    barriersUsed: run?.run.barriersUsed ?? 0,
     testRaw: test?.points ?? 0,
-    mirrorsUsed: run?.mirrorsUsed ?? null,
-    timeUsed: run?.timeUsedSeconds ?? null,
+    mirrorsUsed: run?.run.mirrorsUsed ?? null,
+    timeUsed: run?.run.timeUsedSeconds ?? null,
   };
 }
 
 /** Where a team's points come from: the distance, then each share times its weight. */
-function sharesOf(setup: OpticsSetup, run: OpticsRun | undefined, test: TestPoints | undefined): { score: Exact; display: string; details: ScoreDetail[] } {
-  const rules = opticsRules(setup);
-  const result = opticsScore({ rules, team: toOpticsTeam(setup, '', run, test) });
+function detailsOf(setup: OpticsSetup, { run, test }: Usable, result: OpticsScore): ScoreDetail[] {
+  const { weights } = setup;
   const details: ScoreDetail[] = [];
   const share = (key: string, label: string, ratio: string, weight: number): void => {
     const value = fromRatioText(ratio).mul(weight);
     details.push({ key, label, display: `${roundHalfUp(value, 2)} of ${weight}`, exact: toRatioText(value), outOf: toRatioText(exact(weight)) });
   };
-  if (run !== undefined) {
-    const d = distanceOf(setup, run);
+  if (run !== null) {
+    const d = run.distance;
     const display = d === null ? 'no spot' : `${groupThousands(toShortText(d))} mm`;
     details.push({ key: 'distance', label: 'Distance', display, exact: d === null ? null : toRatioText(d), outOf: null });
-    share('accuracy', 'Accuracy', result.accuracy, rules.wA);
-    share('barriers', 'Barriers used', result.barrier, rules.wB);
+    share('accuracy', 'Accuracy', result.accuracy, weights.accuracy);
+    share('barriers', 'Barriers used', result.barrier, weights.barriers);
   }
-  if (test !== undefined) share('test', 'Written test', result.test, rules.wT);
-  return { score: fromRatioText(result.score), display: result.display, details };
+  if (test !== null) share('test', 'Written test', result.test, weights.test);
+  return details;
 }
 
 function score(setup: OpticsSetup, parts: Partial<OpticsParts>): EventScore<keyof OpticsParts> {
-  const missing = (['run', 'test'] as const).filter((key) => parts[key] === undefined);
-  const faults: { part: 'run' | 'test'; message: string }[] = [];
-  const runMessage = parts.run === undefined ? null : runFault(setup, parts.run);
-  if (runMessage !== null) faults.push({ part: 'run', message: runMessage });
-  if (parts.test !== undefined && !pointsFit(testShape(setup), parts.test)) {
-    faults.push({ part: 'test', message: `The points no longer fit a test out of ${groupThousands(setup.testMax)} and its groups.` });
-  }
-  const usable = (key: 'run' | 'test'): boolean => !faults.some(({ part }) => part === key);
-  const shares = sharesOf(setup, usable('run') ? parts.run : undefined, usable('test') ? parts.test : undefined);
+  const usable = usableParts(setup, parts);
+  const { missing, faults } = usable;
+  // What is not there counts as nothing, which leaves the other shares as they are.
+  const result = opticsScore({ rules: opticsRules(setup), team: toOpticsTeam('', usable) });
   const complete = missing.length === 0 && faults.length === 0;
   return {
     complete,
     missing,
     faults,
-    score: complete ? shares.score : null,
-    display: complete ? shares.display : null,
-    details: shares.details,
+    score: complete ? fromRatioText(result.score) : null,
+    display: complete ? result.display : null,
+    details: detailsOf(setup, usable, result),
   };
 }
 
 function rank(setup: OpticsSetup, teams: readonly EventTeam<OpticsParts>[]): EventRow[] {
-  const isComplete = new Map(teams.map((team) => [team.id, team.status !== 'scored' || score(setup, team.parts).complete]));
-  const ranked = opticsRank(
-    {
-      rules: opticsRules(setup),
-      teams: teams
-        .filter(({ id }) => isComplete.get(id) === true)
-        .map(({ id, status, parts }) => ({
-          // Results of teams that did not start or were disqualified are not read.
-          ...(status === 'scored' ? toOpticsTeam(setup, id, parts.run, parts.test) : { team: id, d: null, barriersUsed: 0, testRaw: 0 }),
-          status,
-        })),
-    },
-    { tieBreak: setup.tieBreak, fieldSize: teams.length },
-  ).rows.map(
+  const counted: OpticsTeam[] = [];
+  const incomplete: EventRow[] = [];
+  for (const { id, status, parts } of teams) {
+    if (status !== 'scored') {
+      // Results of teams that did not start or were disqualified are not read.
+      counted.push({ team: id, d: null, barriersUsed: 0, testRaw: 0, status });
+      continue;
+    }
+    const usable = usableParts(setup, parts);
+    if (usable.run !== null && usable.test !== null) counted.push({ ...toOpticsTeam(id, usable), status });
+    else incomplete.push({ id, status, complete: false, place: null, points: null, score: null, display: null });
+  }
+  const { rows } = opticsRank({ rules: opticsRules(setup), teams: counted }, { tieBreak: setup.tieBreak, fieldSize: teams.length });
+  const ranked = rows.map(
     (row): EventRow => ({
       id: row.team,
       status: row.status,
@@ -123,9 +135,6 @@ function rank(setup: OpticsSetup, teams: readonly EventTeam<OpticsParts>[]): Eve
       display: row.display,
     }),
   );
-  const incomplete = teams
-    .filter(({ id }) => isComplete.get(id) !== true)
-    .map(({ id, status }): EventRow => ({ id, status, complete: false, place: null, points: null, score: null, display: null }));
   return [...ranked.filter(({ status }) => status === 'scored'), ...incomplete, ...ranked.filter(({ status }) => status !== 'scored')];
 }
 
@@ -148,23 +157,22 @@ function resultColumns(setup: OpticsSetup): ResultColumn[] {
 const SPOT_WORDS = { distance: 'measured directly', none: 'no spot' } as const;
 
 function resultCells(setup: OpticsSetup, parts: Partial<OpticsParts>): CsvCell[] {
-  const { details, faults } = score(setup, parts);
-  const run = faults.some(({ part }) => part === 'run') ? undefined : parts.run;
-  const share = (key: string): CsvCell => {
-    const detail = details.find((line) => line.key === key);
-    return detail?.exact == null ? null : csvNumber(roundHalfUp(fromRatioText(detail.exact), 2));
-  };
-  const distance = run === undefined ? null : distanceOf(setup, run);
+  const usable = usableParts(setup, parts);
+  const { run, test } = usable;
+  const result = opticsScore({ rules: opticsRules(setup), team: toOpticsTeam('', usable) });
+  const share = (there: boolean, ratio: string, weight: number): CsvCell =>
+    there ? csvNumber(roundHalfUp(fromRatioText(ratio).mul(weight), 2)) : null;
+  const reading = run?.run.reading;
   return [
-    run === undefined ? null : run.reading.kind === 'tape' ? `${run.reading.wall} wall` : SPOT_WORDS[run.reading.kind],
-    distance === null ? null : csvNumber(toShortText(distance)),
-    run?.mirrorsUsed ?? null,
-    run?.barriersUsed ?? null,
-    run?.timeUsedSeconds === undefined ? null : csvNumber(run.timeUsedSeconds),
-    ...testCells(testShape(setup), parts.test),
-    share('accuracy'),
-    share('barriers'),
-    share('test'),
+    reading === undefined ? null : reading.kind === 'tape' ? `${reading.wall} wall` : SPOT_WORDS[reading.kind],
+    run?.distance == null ? null : csvNumber(toShortText(run.distance)),
+    run?.run.mirrorsUsed ?? null,
+    run?.run.barriersUsed ?? null,
+    run?.run.timeUsedSeconds === undefined ? null : csvNumber(run.run.timeUsedSeconds),
+    ...testCells(testShape(setup), test ?? undefined),
+    share(run !== null, result.accuracy, setup.weights.accuracy),
+    share(run !== null, result.barrier, setup.weights.barriers),
+    share(test !== null, result.test, setup.weights.test),
   ];
 }
 

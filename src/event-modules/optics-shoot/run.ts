@@ -78,19 +78,18 @@ export function distanceRangeWords(setup: OpticsSetup): string {
   return `Half way round the box is ${most} mm: the distance can be 0 to ${most}.`;
 }
 
-/** 'from 0 to 5', or '0' alone. */
-const upTo = (most: number): string => (most === 0 ? 'write 0' : `write a whole number from 0 to ${most}`);
 
 /** Said when mirrors used is not a whole number within what is allowed. */
 export function mirrorsRangeWords(setup: OpticsSetup): string {
   const { mirrorsAllowed: n } = setup;
-  return `A team may use up to ${n} mirror${n === 1 ? '' : 's'}: ${upTo(n)}.`;
+  if (n === 0) return 'No mirrors may be used: write 0.';
+  return `A team may use up to ${n} mirror${n === 1 ? '' : 's'}: write a whole number from 0 to ${n}.`;
 }
 
 /** Said when barriers used is not a whole number within those standing. */
 export function barriersRangeWords(setup: OpticsSetup): string {
   const { barriersStanding: n } = setup;
-  return `${n} barrier${n === 1 ? ' stands' : 's stand'} in the box: ${upTo(n)}.`;
+  return `${n} barrier${n === 1 ? ' stands' : 's stand'} in the box: write a whole number from 0 to ${n}.`;
 }
 
 function readingSchema(setup: OpticsSetup): z.ZodMiniType<Reading> {
