@@ -26,6 +26,14 @@ export interface DecimalFieldProps {
   inputRef?: Ref<HTMLInputElement> | undefined;
 }
 
+function StepSign({ plus = false }: { plus?: boolean }) {
+  return (
+    <svg width="18" height="18" viewBox="0 0 18 18" stroke="currentColor" strokeWidth="2.5" aria-hidden="true">
+      <path d={plus ? 'M2 9h14M9 2v14' : 'M2 9h14'} />
+    </svg>
+  );
+}
+
 /**
  * A measured number: a text field with a numeric keypad, and a button on each side. Text that is no number
  * stays where it is, for the error beside it to speak of.
@@ -56,7 +64,7 @@ export function DecimalField(props: DecimalFieldProps) {
     >
       <div className={big ? 'stepper big' : 'stepper'}>
         <Button onPress={() => move(-1)} isDisabled={isDisabled || atLeast} aria-label={`${label}: ${step} less`}>
-          −
+          <StepSign />
         </Button>
         <div className={props.error ? 'value invalid' : 'value'}>
           <input
@@ -77,7 +85,7 @@ export function DecimalField(props: DecimalFieldProps) {
           <span id={`${id}-unit`}>{unit}</span>
         </div>
         <Button onPress={() => move(1)} isDisabled={isDisabled || atMost} aria-label={`${label}: ${step} more`}>
-          +
+          <StepSign plus />
         </Button>
       </div>
     </FieldShell>
