@@ -4,7 +4,7 @@
  *
  * Needs Node.js only. PORT and MAIL_FAKE_PORT choose the ports; LOG_LEVEL how much the application logs.
  */
-import { existsSync, mkdirSync, readFileSync } from 'node:fs';
+import { chmodSync, existsSync, mkdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { developmentCluster, ensureDevelopmentCluster } from './cluster.mjs';
@@ -125,6 +125,7 @@ async function prepareDatabase(appEnvironment) {
       env: environment({ ...app, FAIRLEAD_ACCOUNTS_FILE: ACCOUNTS_FILE }),
       failed: `The demo could not be filled in; see ${shown(join(LOGS, 'seed.log'))}. "npm run reset" begins again.`,
     }));
+    if (existsSync(ACCOUNTS_FILE)) chmodSync(ACCOUNTS_FILE, 0o600);
     updateState((state) => { state.demo = 'done'; });
   }
   return app;
@@ -255,4 +256,4 @@ async function databaseGone() {
   while (stopping || runningServer(cluster)) await sleep(2000, undefined, { ref: false });
 }
 
-await main();
+await main().catch(report);

@@ -151,8 +151,15 @@ export async function createCluster(cluster) {
     }
     return false;
   }
-  const making = join(cluster.home, 'data.making');
-  rmSync(making, { recursive: true, force: true });
+  const making = join(cluster.home, `data.making.${process.pid}`);
+  for (const name of readdirSync(cluster.home)) {
+    if (!name.startsWith('data.making.')) continue;
+    try {
+      rmSync(join(cluster.home, name), { recursive: true, force: true });
+    } catch {
+      // The initdb of a killed start is still writing there; it ends by itself and is cleared away another time.
+    }
+  }
   writeFileSync(passwordFile, `${randomSecret()}\n`, { mode: 0o600 });
   chmodSync(passwordFile, 0o600);
   give(cluster, passwordFile);
@@ -205,16 +212,7 @@ const quoted = (text) => `'${String(text).replaceAll("'", "''")}'`;
  * `settings` are further server settings by name. Answers whether it was started now.
  */
 export async function startServer(cluster, { port: wanted, settings = {} } = {}) {
-  const already = runningServer(cluster);
-  if (already) {
-    cluster.port = already.port;
-    for (let i = 0; i < 150; i += 1) {
-      if ((await query(cluster, 'select 1')).code === 0) return false;
-      if (!runningServer(cluster)) break;
-      await sleep(200);
-    }
-    if (runningServer(cluster)) throw broken(cluster, 'A database server is running, but it does not answer.');
-  }
+  if (await adopt(cluster)) return false;
   const sockets = join(cluster.home, 's');
   const hasSockets = Buffer.byteLength(sockets) <= LONGEST_SOCKET_FOLDER;
   if (hasSockets) {
@@ -234,14 +232,28 @@ export async function startServer(cluster, { port: wanted, settings = {} } = {})
     const begun = existsSync(cluster.log) ? statSync(cluster.log).size : 0;
     if (await control(cluster, ['start', '--wait', '--timeout', '60', '--silent'])) return true;
     const said = readFileSync(cluster.log, 'utf8').slice(begun);
-    if (attempt < 2 && /could not bind|shared memory block/i.test(said)) {
-      // The port went to somebody else since we looked, or the last server's helpers are still leaving.
+    // The port went to somebody else since we looked, the last server's helpers are still leaving, or a start that was killed had
+    // just got a server going.
+    if (attempt < 2 && /could not bind|shared memory block|lock file "postmaster\.pid"/i.test(said)) {
       await sleep(1000);
+      if (await adopt(cluster)) return false;
       continue;
     }
     throw Object.assign(broken(cluster, 'The database does not start.'), { tail: said.trim().split('\n').slice(-8).join('\n') });
   }
   throw broken(cluster, 'The database does not start.');
+}
+
+/** Takes over a server that is already up, once it answers; answers whether there is one. */
+async function adopt(cluster) {
+  for (let i = 0; i < 150; i += 1) {
+    const server = runningServer(cluster);
+    if (!server) return false;
+    cluster.port = server.port;
+    if ((await query(cluster, 'select 1')).code === 0) return true;
+    await sleep(200);
+  }
+  throw broken(cluster, 'A database server is running, but it does not answer.');
 }
 
 /**

@@ -4,6 +4,8 @@
  */
 const seconds = (ms) => `${(ms / 1000).toFixed(1)} s`.padStart(8);
 
+const lower = (text) => text[0].toLowerCase() + text.slice(1);
+
 export class Progress {
   #active = new Map();
   #ticker;
@@ -53,8 +55,8 @@ export class Progress {
     if (this.#live) {
       const oldest = [...this.#active.values()][0];
       if (!oldest) return;
-      const names = [...this.#active.values()].map(({ doing }) => doing).join(', ');
-      const room = (process.stdout.columns ?? 80) - 12;
+      const names = [...this.#active.values()].map(({ doing }, i) => (i ? lower(doing) : doing)).join(', ');
+      const room = (process.stdout.columns || 80) - 12;
       this.#clear();
       process.stdout.write(`${seconds(now - oldest.since)}  ${names.length > room ? `${names.slice(0, room - 1)}…` : names}`);
       return;
@@ -62,7 +64,7 @@ export class Progress {
     for (const step of this.#active.values()) {
       const taken = now - step.since;
       if (taken > 2000 && now - step.told > 30_000) {
-        console.log(`${step.told ? seconds(taken) : ' '.repeat(8)}  ${step.told ? 'still ' : ''}${step.told ? step.doing[0].toLowerCase() + step.doing.slice(1) : step.doing} …`);
+        console.log(`${step.told ? seconds(taken) : ' '.repeat(8)}  ${step.told ? `Still ${lower(step.doing)}` : step.doing} …`);
         step.told = now;
       }
     }

@@ -3,7 +3,7 @@
  * noted on disk before anything else happens. A run that was killed is found by its notes at the next one, which ends what is
  * left of it.
  */
-import { linkSync, mkdirSync, readFileSync, renameSync, rmSync, writeFileSync } from 'node:fs';
+import { existsSync, linkSync, mkdirSync, readFileSync, renameSync, rmSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { LOCAL, LOGS } from './paths.mjs';
@@ -26,12 +26,14 @@ function writeJson(file, value) {
 
 /**
  * The npm (and its shell) that we were started by. They are the terminal's hold on us: when they are killed, nobody is left who
- * could press Ctrl-C, and we stop as well. Empty when npm has no part in it, or where /proc is missing.
+ * could press Ctrl-C, and we stop as well. Empty when npm has no part in it, or where /proc is missing; `null` when npm was
+ * killed before we looked.
  */
 function launchers() {
-  if (!process.env.npm_lifecycle_event) return [];
+  if (!process.env.npm_lifecycle_event || !existsSync('/proc/self/stat')) return [];
   const found = [];
-  for (let pid = process.ppid; pid > 1 && found.length < 2;) {
+  let pid = process.ppid;
+  for (let i = 0; i < 2; i += 1) {
     let command;
     let parent;
     try {
@@ -39,13 +41,15 @@ function launchers() {
       const stat = readFileSync(`/proc/${pid}/stat`, 'utf8');
       parent = Number(stat.slice(stat.lastIndexOf(')') + 2).split(' ')[1]);
     } catch {
-      break;
+      return null;
     }
+    const isNpm = /\bnpm(-cli\.js)?\b/.test(command);
+    if (pid === 1 || /^\S*\bsystemd\b/.test(command)) return isNpm ? found : null;
+    if (!isNpm && !/^\S*sh -c /.test(command)) return found;
     const noted = identify(pid);
-    const isNpm = /^npm\b|\bnpm(-cli\.js)?\b/.test(command);
-    if (!noted || (!isNpm && !/^(\S*\/)?(da|ba|z|k)?sh -c/.test(command))) break;
+    if (!noted) return null;
     found.push(noted);
-    if (isNpm) break;
+    if (isNpm) return found;
     pid = parent;
   }
   return found;
@@ -57,7 +61,7 @@ export class Session {
   #notesFile;
   #notes = { children: [] };
   #running = new Set();
-  #launchers = launchers();
+  #launchers = [];
   #watch;
   #over = false;
   #released = false;
@@ -70,9 +74,12 @@ export class Session {
 
   /**
    * Takes the lock. Gives `null` when it is ours, or the notes of the run that holds it: `{pid, …what it described}`. A holder
-   * whose npm was killed is told to stop and waited for.
+   * whose npm was killed is told to stop and waited for. Throws Trouble when it is our own npm that was killed.
    */
   async take() {
+    const by = launchers();
+    if (!by) throw new Trouble('Stopped.');
+    this.#launchers = by;
     mkdirSync(LOCAL, { recursive: true });
     const mine = `${this.#lock}.${process.pid}`;
     writeFileSync(mine, JSON.stringify({ ...identify(process.pid), launchers: this.#launchers }), { mode: 0o600 });
