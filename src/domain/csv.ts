@@ -25,7 +25,6 @@ export function csvNumber(decimal: string): CsvNumber {
 
 // What makes a spreadsheet take a cell for a formula: OWASP, "CSV Injection" (= + - @, tab, CR, LF and the full-width forms) and
 // OWASP ASVS 5.0 requirement 1.2.10 (also NUL). Blanks before the sign are trimmed by some programs, so they don't hide it.
-// eslint-disable-next-line no-control-regex -- the control characters are the point
 const FORMULA_START = /^(?:[\t\r\n\0]|[\s\0]*[=+\-@＝＋－＠])/;
 
 /** Text that no spreadsheet takes for a formula: where it could be one, a leading apostrophe makes it text. */

@@ -77,7 +77,6 @@ export function textField(most: number, messages: { required?: string; tooLong: 
     const refuse = (message: string): void => {
       ctx.issues.push({ code: 'custom', message, input: ctx.value });
     };
-    // eslint-disable-next-line no-control-regex -- control characters are what is looked for
     if (/[\u0000-\u0008\u000b\u000c\u000e-\u001f\u007f]/.test(ctx.value)) refuse('This holds a character that can’t be kept. Type it again.');
     else if (messages.required !== undefined && ctx.value === '') refuse(messages.required);
     else if (ctx.value.length > most) refuse(messages.tooLong);

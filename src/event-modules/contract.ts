@@ -61,6 +61,8 @@ export interface EventPart<Setup, Key extends string, Value> {
   schema(setup: Setup): ZodMiniType<Value>;
   /** The value in a few words. */
   describe(setup: Setup, value: Value): string;
+  /** The value and what is worked out from it (both ways round, say), for the people who run the event. */
+  workings(setup: Setup, value: Value): Line[];
   csv: PartCsv<Setup, Value> | null;
 }
 

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { csvLine, writeCsv, type CsvCell } from '~/domain/csv';
 import { readCsv } from '~/domain/csv-reader';
-import { DomainError } from '~/domain/domain-error';
+import type { DomainError } from '~/domain/domain-error';
 import { compareExact, exact, roundHalfUp, type Exact } from '~/domain/exact';
 import { checkValue } from '~/domain/fields';
 import type { AnyEventModule, EventTeam } from './contract';
@@ -87,6 +87,9 @@ describe.each(everySetup)('%s', (_, module, setup) => {
         expect(checkValue(part.schema(setup), value)).toEqual({ ok: true, value });
         expect(JSON.parse(JSON.stringify(value))).toEqual(value);
         expect(part.describe(setup, value).trim()).not.toBe('');
+        const lines = part.workings(setup, value);
+        expect(lines.length).toBeGreaterThan(0);
+        for (const line of lines) expect(`${line.label}|${line.value}`).toMatch(/^\S.*\|\S/);
       }
     }
   });

@@ -22,6 +22,17 @@ export function testPart<Setup>(shapeOf: (setup: Setup) => TestShape): EventPart
     name: 'Written test',
     schema: (setup) => testPointsSchema(shapeOf(setup)),
     describe: (setup, value) => `${groupThousands(value.points)} of ${groupThousands(shapeOf(setup).max)} points`,
+    workings: (setup, value) => {
+      const shape = shapeOf(setup);
+      const line = (label: string, points: string, max: string) => ({ label, value: `${groupThousands(points)} of ${groupThousands(max)}` });
+      return [
+        line('Test points', value.points, shape.max),
+        ...shape.groups.flatMap((group) => {
+          const points = value.groups?.[group.key];
+          return points === undefined ? [] : [line(group.name, points, group.max)];
+        }),
+      ];
+    },
     csv: {
       fields,
       parseCsvRow: (setup, cells) => {

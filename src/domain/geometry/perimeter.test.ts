@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { DomainError } from '../domain-error';
+import type { DomainError } from '../domain-error';
 import { exact, toDecimalText, toShortText } from '../exact';
 import {
   directDistance,

@@ -5,7 +5,7 @@ import { checkValue } from '~/domain/fields';
 import { perimeterDistance, WALLS } from '~/domain/geometry/perimeter';
 import { opticsRank, opticsScore } from '~/domain/scoring/optics';
 import { opticsShoot } from './module';
-import { describeRun, opticsRunSchema, readingDistances, type OpticsRun, type Reading } from './run';
+import { describeRun, opticsRunSchema, readingDistances, runWorkings, type OpticsRun, type Reading } from './run';
 import { opticsDefaults, opticsFindings, opticsPublic, opticsRules, opticsSummary, type OpticsSetup } from './setup';
 import { opticsSetupSchema } from './setup-schema';
 
@@ -241,6 +241,20 @@ describe('the set-up', () => {
       expect(opticsSummary(SETUP).map(({ label }) => label)).toContain(hidden);
       expect(labels).not.toContain(hidden);
     }
+  });
+
+  it('shows both ways round and which counts', () => {
+    const lines = (reading: Reading) => Object.fromEntries(runWorkings(SETUP, { ...RUN, reading }).map(({ label, value }) => [label, value]));
+    expect(lines({ kind: 'tape', wall: 'back', tape: '612.5' })).toMatchObject({
+      Spot: 'back wall, tape 612.5 mm, from the left corner to the right',
+      'Counter-clockwise': '112.5 mm',
+      Clockwise: '3,087.5 mm',
+      'Distance that counts': '112.5 mm',
+      'Mirrors used': '3 of 5',
+    });
+    expect(lines({ kind: 'tape', wall: 'front', tape: '500' })['Distance that counts']).toBe('1,600 mm, the same both ways');
+    expect(lines({ kind: 'distance', mm: '80' })).toMatchObject({ 'The other way round': '3,120 mm', 'Distance that counts': '80 mm' });
+    expect(lines({ kind: 'none' })).toMatchObject({ Spot: 'no spot on any wall', 'Distance that counts': 'none' });
   });
 
   it('describes a run in a few words', () => {

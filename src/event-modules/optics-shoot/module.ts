@@ -6,7 +6,7 @@ import { opticsRank, opticsScore, type OpticsScore, type OpticsTeam } from '~/do
 import { pointsFit, type TestPoints, type TestShape } from '~/domain/scoring/test-points';
 import type { EventModule, EventPart, EventRow, EventScore, EventTeam, PartFault, ResultColumn, ScoreDetail } from '../contract';
 import { testCells, testPart } from '../test-part';
-import { barriersRangeWords, describeRun, mirrorsRangeWords, opticsRunSchema, readingDistances, type OpticsRun } from './run';
+import { barriersRangeWords, describeRun, mirrorsRangeWords, opticsRunSchema, readingDistances, runWorkings, type OpticsRun } from './run';
 import { opticsSampleSetups, opticsSampleTeams, type OpticsParts } from './samples';
 import {
   opticsDefaults,
@@ -26,6 +26,7 @@ const runPart: EventPart<OpticsSetup, 'run', OpticsRun> = {
   name: 'Run',
   schema: opticsRunSchema,
   describe: describeRun,
+  workings: runWorkings,
   csv: null,
 };
 

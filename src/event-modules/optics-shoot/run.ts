@@ -8,10 +8,12 @@ import {
   exactPerimeterDistance,
   exactWallLength,
   tapeToOffset,
+  tapeWords,
   WALLS,
   type Wall,
   type Way,
 } from '~/domain/geometry/perimeter';
+import type { Line } from '../contract';
 import { opticsBox, RUN_SECONDS, type OpticsSetup } from './setup';
 
 /** A wall and the tape's number on it, or the distance measured directly along the walls, or no spot on any wall. */
@@ -166,4 +168,35 @@ export function describeRun(setup: OpticsSetup, run: OpticsRun): string {
   const count = (n: number, noun: string): string => `${n} ${noun}${n === 1 ? '' : 's'}`;
   const time = run.timeUsedSeconds === undefined ? '' : `, ${run.timeUsedSeconds} s`;
   return `${spot}; ${count(run.mirrorsUsed, 'mirror')}, ${count(run.barriersUsed, 'barrier')} used${time}`;
+}
+
+/** The run line by line, with both ways round and the one that counts. */
+export function runWorkings(setup: OpticsSetup, run: OpticsRun): Line[] {
+  const { reading } = run;
+  const { counterClockwise, clockwise, shorter, longer, way } = readingDistances(setup, reading);
+  const length = (value: Exact | null): string => (value === null ? 'none' : `${words(value)} mm`);
+  const spot =
+    reading.kind === 'none'
+      ? 'no spot on any wall'
+      : reading.kind === 'distance'
+        ? 'distance measured directly'
+        : `${reading.wall} wall, tape ${groupThousands(reading.tape)} mm, ${tapeWords(reading.wall, setup.tapes)}`;
+  const ways: Line[] =
+    reading.kind === 'tape'
+      ? [
+          { label: 'Counter-clockwise', value: length(counterClockwise) },
+          { label: 'Clockwise', value: length(clockwise) },
+        ]
+      : reading.kind === 'distance'
+        ? [{ label: 'The other way round', value: length(longer) }]
+        : [];
+  return [
+    { label: 'Spot', value: spot },
+    ...ways,
+    { label: 'Distance that counts', value: shorter === null ? 'none' : `${length(shorter)}${way === 'tie' ? ', the same both ways' : ''}` },
+    { label: 'Mirrors used', value: `${run.mirrorsUsed} of ${setup.mirrorsAllowed}` },
+    { label: 'Barriers used', value: `${run.barriersUsed} of ${setup.barriersStanding}` },
+    ...(run.timeUsedSeconds === undefined ? [] : [{ label: 'Time used', value: `${run.timeUsedSeconds} s` }]),
+    ...(run.remarks === undefined ? [] : [{ label: 'Remarks', value: run.remarks }]),
+  ];
 }
