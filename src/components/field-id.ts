@@ -20,6 +20,11 @@ export interface FieldMessages {
   max?: string | undefined;
 }
 
+/** A label as the start of a sentence about it; a question is quoted. */
+export function named(label: string): string {
+  return label.endsWith('?') ? `‘${label}’` : label;
+}
+
 /** Those words as the attributes the form script reads, with plain ones where none is given. */
 export function messageAttributes(
   label: string,
@@ -27,8 +32,8 @@ export function messageAttributes(
   has: { required?: boolean | undefined; maxlength?: number | undefined },
 ): Record<string, string> {
   const words: FieldMessages = {
-    ...(has.required ? { required: `${label}: fill this in.` } : {}),
-    ...(has.maxlength ? { maxlength: `${label}: at most ${has.maxlength} characters.` } : {}),
+    ...(has.required ? { required: `${named(label)}: fill this in.` } : {}),
+    ...(has.maxlength ? { maxlength: `${named(label)}: at most ${has.maxlength} characters.` } : {}),
     ...messages,
   };
   return Object.fromEntries(

@@ -73,12 +73,17 @@ export function ruleSvg(spec: RuleSpec): Markup {
     const share = rulePercent(at, min, max);
     return share < 1.5 ? 'start' : share > 98.5 ? 'end' : 'middle';
   };
+  // A label the present moment stands upon gives way to it; on a narrow rule, so does its neighbour.
+  const beside = (at: number) => {
+    const away = now ? Math.abs(rulePercent(at, min, max) - rulePercent(now.at, min, max)) : 100;
+    return away < 5 ? ' under' : away < 14 ? ' near' : '';
+  };
   const labelled = marks.some((mark) => mark.label);
   const height = flags.length > 0 ? 84 : blocks.length > 0 ? 78 : labelled ? 62 : 36;
 
   return markup`<svg height="${height}" class="${flags.length > 0 ? 'mm-flags' : ''}" aria-hidden="true" focusable="false">${labels.map(
     (label, i) =>
-      markup`<text class="mm-label${i % 2 === 1 ? ' odd' : ''}" x="${x(label.at)}" y="12" text-anchor="${anchor(label.at)}">${label.text}</text>`,
+      markup`<text class="mm-label${i % 2 === 1 ? ' odd' : ''}${beside(label.at)}" x="${x(label.at)}" y="12" text-anchor="${anchor(label.at)}">${label.text}</text>`,
   )}<g shape-rendering="crispEdges"><line class="mm-line" x1="0" x2="100%" y1="${AXIS}" y2="${AXIS}"/>${ticks.map(
     (tick) =>
       markup`<line class="mm-${tick.kind}" x1="${x(tick.at)}" x2="${x(tick.at)}" y1="${AXIS}" y2="${AXIS + TICK[tick.kind]}"/>`,

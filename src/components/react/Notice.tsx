@@ -11,7 +11,7 @@ export interface NoticeProps {
 export function Notice({ tone = 'info', title, children, action }: NoticeProps) {
   return (
     <div className={tone === 'info' ? 'notice' : `notice ${tone}`}>
-      <div className="min-w-0 max-w-[75ch]">
+      <div className="min-w-0 max-w-[100ch]">
         {title && <b>{title} </b>}
         {children}
       </div>
