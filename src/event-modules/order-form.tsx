@@ -19,8 +19,8 @@ export function OrderForm<Key extends string>(props: {
     props.onChange(order);
     // The focus stays with the line that moved.
     requestAnimationFrame(() => {
-      const buttons = list.current?.querySelectorAll<HTMLButtonElement>(`[data-at="${i + by}"]`);
-      [...(buttons ?? [])].find((b) => b.dataset['by'] === String(by) && !b.disabled)?.focus() ?? buttons?.[0]?.focus();
+      const buttons = [...(list.current?.querySelectorAll<HTMLButtonElement>(`[data-at="${i + by}"]:not(:disabled)`) ?? [])];
+      (buttons.find((b) => b.dataset['by'] === String(by)) ?? buttons[0])?.focus();
     });
   };
   return (
