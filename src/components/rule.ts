@@ -1,4 +1,4 @@
-import { markup, Markup } from './markup';
+import { markup, type Markup } from './markup';
 
 /**
  * The rule: a millimetre scale as the axis of whatever is measured: a day, a run, a field of results.
