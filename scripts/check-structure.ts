@@ -48,7 +48,7 @@ for (const file of ['src', 'tests', 'seed', 'fakes', 'scripts'].flatMap(walk)) {
 for (const file of walk('src/pages')) {
   const text = readFileSync(join(root, file), 'utf8');
   if (file.endsWith('.astro')) {
-    const isError = /^src\/pages\/(404|500)\.astro$/.test(file);
+    const isError = /^src\/pages\/(404|500|refused)\.astro$/.test(file);
     if (!isError && !/\brequire(Org|Tournament)?Page\(Astro,/.test(text)) wrong.push(`${file}: declares no access (requirePage)`);
     if (/export const prerender = true/.test(text)) wrong.push(`${file}: is prerendered; headers and access would not hold`);
     if (/define:vars|transition:|server:defer/.test(text)) wrong.push(`${file}: uses a directive with a known hole (define:vars, transition:*, server:defer)`);
