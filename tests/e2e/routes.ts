@@ -41,7 +41,7 @@ export function listRoutes(): Route[] {
     const path = file.slice(pages.length).replace(/\.(astro|ts)$/, '').replace(/\/index$/, '') || '/';
     const text = readFileSync(file, 'utf8');
     if (file.endsWith('.astro')) {
-      if (path === '/404' || path === '/500') continue;
+      if (path === '/404' || path === '/500' || path === '/refused') continue;
       const found = /\brequire(?:Org|Tournament)?Page\(\s*Astro,\s*(STAFF|'\w+'|only\([^)]*\))/.exec(text);
       if (!found) throw new Error(`${path} declares no access`);
       routes.push({ pattern: path, method: 'GET', kind: 'page', access: accessIn(found[1]!.replace(/\s+/g, ' '), file), file });
