@@ -5,8 +5,10 @@
  *   node scripts/cluster.mjs stop     stops it
  */
 import { join } from 'node:path';
+import { setTimeout as sleep } from 'node:timers/promises';
 import { LOCAL, LOGS } from './local/paths.mjs';
 import { adminUrl, connectionUrl, createCluster, ensureDatabase, ensureRoles, openCluster, startServer, stopServer } from './local/postgres.mjs';
+import { Session } from './local/session.mjs';
 import { readState, secrets, updateState } from './local/state.mjs';
 import { Trouble, report } from './local/trouble.mjs';
 
@@ -20,20 +22,26 @@ export function developmentCluster() {
  * Gives `{cluster, created, port, ownerUrl, appUrl, adminUrl}`.
  */
 export async function ensureDevelopmentCluster(cluster = developmentCluster()) {
-  const created = await createCluster(cluster);
-  await startServer(cluster, { port: readState().clusterPort });
-  updateState((state) => { state.clusterPort = cluster.port; });
-  const { ownerPassword, appPassword } = secrets();
-  await ensureRoles(cluster, { ownerPassword, appPassword });
-  await ensureDatabase(cluster, 'fairlead');
-  return {
-    cluster,
-    created,
-    port: cluster.port,
-    ownerUrl: connectionUrl(cluster, 'fairlead_owner', ownerPassword, 'fairlead'),
-    appUrl: connectionUrl(cluster, 'fairlead_app', appPassword, 'fairlead'),
-    adminUrl: adminUrl(cluster),
-  };
+  const turn = new Session('cluster');
+  while (await turn.take()) await sleep(100);
+  try {
+    const created = await createCluster(cluster);
+    await startServer(cluster, { port: readState().clusterPort });
+    updateState((state) => { state.clusterPort = cluster.port; });
+    const { ownerPassword, appPassword } = secrets();
+    await ensureRoles(cluster, { ownerPassword, appPassword });
+    await ensureDatabase(cluster, 'fairlead');
+    return {
+      cluster,
+      created,
+      port: cluster.port,
+      ownerUrl: connectionUrl(cluster, 'fairlead_owner', ownerPassword, 'fairlead'),
+      appUrl: connectionUrl(cluster, 'fairlead_app', appPassword, 'fairlead'),
+      adminUrl: adminUrl(cluster),
+    };
+  } finally {
+    turn.release();
+  }
 }
 
 async function main(verb) {

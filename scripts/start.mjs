@@ -9,6 +9,7 @@ import { join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { developmentCluster, ensureDevelopmentCluster } from './cluster.mjs';
 import { isBuilt, outDir, sourcesHash } from './local/build.mjs';
+import { environment } from './local/environment.mjs';
 import { checkNode, installNpmPackages, installPostgres } from './local/packages.mjs';
 import { LOCAL, LOGS, ROOT, shown } from './local/paths.mjs';
 import { dropDatabase, runningServer, startServer, stopServer } from './local/postgres.mjs';
@@ -43,16 +44,6 @@ async function choosePort(variable, usual, avoid = []) {
   if (!Number.isInteger(port) || port < 1 || port > 65_535) throw new Trouble(`${variable} is "${asked}", and a port is a whole number from 1 to 65535.`);
   if (!(await tryPort(port))) throw new Trouble(`Port ${port} can't be used, most likely because another program has it: set ${variable} to another one, or leave it unset.`);
   return port;
-}
-
-/**
- * The environment for what we start: ours and a few neutral variables. Nothing else of the caller's gets through, so that a
- * database address or a mail key of a real installation in the same shell can't reach the demo.
- */
-function environment(more) {
-  const neutral = ['PATH', 'HOME', 'LANG', 'LC_ALL', 'TZ', 'TMPDIR', 'NODE_OPTIONS', 'NODE_EXTRA_CA_CERTS'];
-  const kept = Object.fromEntries(neutral.filter((key) => process.env[key] !== undefined).map((key) => [key, process.env[key]]));
-  return { ...kept, ASTRO_TELEMETRY_DISABLED: '1', ...more };
 }
 
 const tsx = (file) => ({ command: process.execPath, args: ['--import', 'tsx', file], cwd: ROOT });

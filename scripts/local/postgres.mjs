@@ -2,12 +2,12 @@
  * A PostgreSQL cluster of our own: found, made, started, stopped and spoken to with the server's own programs, so that none
  * of it needs an npm package. The distribution's default cluster is never used or changed.
  *
- * A cluster's home folder holds `data` (the cluster), `superuser.password` (0600) and `s` (its sockets). It is owned by the
- * account that runs the server: oneself, or `postgres` for root, because the server refuses to run as root.
+ * A cluster's home folder holds `data` (the cluster, with its superuser's password in a file of its own, 0600) and `s` (its
+ * sockets). It is owned by the account that runs the server: oneself, or `postgres` for root, because the server refuses to run as root.
  */
 import { spawn, spawnSync } from 'node:child_process';
 import {
-  appendFileSync, chmodSync, chownSync, closeSync, existsSync, mkdirSync, openSync, readFileSync, readdirSync, readlinkSync,
+  appendFileSync, chownSync, closeSync, existsSync, mkdirSync, openSync, readFileSync, readdirSync, readlinkSync,
   renameSync, rmSync, statSync, writeFileSync,
 } from 'node:fs';
 import { delimiter, dirname, join } from 'node:path';
@@ -135,7 +135,6 @@ const broken = (cluster, what) =>
  * cluster or a whole one. Answers whether it was made now. Throws Trouble when what is there is not a usable cluster.
  */
 export async function createCluster(cluster) {
-  const passwordFile = join(cluster.home, 'superuser.password');
   if (existsSync(cluster.data)) {
     let version;
     try {
@@ -146,8 +145,8 @@ export async function createCluster(cluster) {
     if (version !== String(cluster.major)) {
       throw broken(cluster, `The database in ${shown(cluster.data)} was made by PostgreSQL ${version}, and PostgreSQL ${cluster.major} can't read it.`);
     }
-    if (!existsSync(passwordFile)) {
-      throw broken(cluster, `The database's password file ${shown(passwordFile)} is gone.`);
+    if (!existsSync(passwordFile(cluster))) {
+      throw broken(cluster, `The database's password file ${shown(passwordFile(cluster))} is gone.`);
     }
     return false;
   }
@@ -160,17 +159,18 @@ export async function createCluster(cluster) {
       // The initdb of a killed start is still writing there; it ends by itself and is cleared away another time.
     }
   }
-  writeFileSync(passwordFile, `${randomSecret()}\n`, { mode: 0o600 });
-  chmodSync(passwordFile, 0o600);
-  give(cluster, passwordFile);
+  const password = `${making}.password`;
+  writeFileSync(password, `${randomSecret()}\n`, { mode: 0o600 });
+  give(cluster, password);
   const made = await run(cluster, 'initdb', [
-    '--pgdata', making, '--username', SUPERUSER, '--pwfile', passwordFile, '--auth', 'scram-sha-256',
+    '--pgdata', making, '--username', SUPERUSER, '--pwfile', password, '--auth', 'scram-sha-256',
     '--encoding', 'UTF8', '--locale', 'C.UTF-8', '--data-checksums',
   ]);
   mkdirSync(dirname(cluster.log), { recursive: true });
   appendFileSync(cluster.log, made.output + made.errors);
   if (made.code !== 0) throw new Trouble(`PostgreSQL could not make its cluster; see ${shown(cluster.log)}.`, { tail: tail(cluster.log, 8) });
   appendFileSync(join(making, 'postgresql.conf'), "\ninclude 'fairlead.conf'\n");
+  renameSync(password, join(making, 'superuser.password'));
   renameSync(making, cluster.data);
   return true;
 }
@@ -281,8 +281,10 @@ export async function stopServer(cluster) {
   if (runningServer(cluster)) await end(server, { first: 'SIGQUIT', patience: 5000 });
 }
 
+const passwordFile = (cluster) => join(cluster.data, 'superuser.password');
+
 function superuserPassword(cluster) {
-  return readFileSync(join(cluster.home, 'superuser.password'), 'utf8').trim();
+  return readFileSync(passwordFile(cluster), 'utf8').trim();
 }
 
 /** The address to connect with; the role's password is percent-encoded where it needs to be. */

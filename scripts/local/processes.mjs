@@ -66,19 +66,20 @@ export async function end(noted, { patience = 10_000, first = 'SIGTERM' } = {}) 
 
 /**
  * Starts a program in a session of its own, so that Ctrl-C reaches only the process that looks after it, which can then end
- * things in order. Output goes to `log` (appended, or started afresh with `fresh`). `onNote` gets `{name, pid, identity}` at
- * once, before anything is awaited, to be put on disk.
+ * things in order. Output goes to `log` (appended, or started afresh with `fresh`), or to our own output when `log` is null.
+ * `onNote` gets `{name, pid, identity}` at once, before anything is awaited, to be put on disk.
  */
-export function launch({ name, command, args = [], cwd, env, log, fresh = true, onNote, ipc = false }) {
-  mkdirSync(dirname(log), { recursive: true });
-  const out = openSync(log, fresh ? 'w' : 'a', 0o600);
+export function launch({ name, command, args = [], cwd, env, log, fresh = true, onNote }) {
+  let out = 'inherit';
+  if (log) {
+    mkdirSync(dirname(log), { recursive: true });
+    out = openSync(log, fresh ? 'w' : 'a', 0o600);
+  }
   let child;
   try {
-    child = spawn(command, args, {
-      cwd, env, detached: true, stdio: ipc ? ['ignore', out, out, 'ipc'] : ['ignore', out, out],
-    });
+    child = spawn(command, args, { cwd, env, detached: true, stdio: ['ignore', out, out] });
   } finally {
-    closeSync(out);
+    if (log) closeSync(out);
   }
   const noted = child.pid ? identify(child.pid) : null;
   if (noted) onNote?.({ name, ...noted });

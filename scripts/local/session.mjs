@@ -143,9 +143,9 @@ export class Session {
 
   /**
    * Starts a program with its output in `.local/logs/<name>.log`; see `launch`. With `leave` it is never ended from here
-   * (a package manager must not be cut off).
+   * (a package manager must not be cut off). With `show` the output goes to the terminal instead.
    */
-  launch({ name, command, args, cwd, env, fresh, log = join(LOGS, `${name}.log`), leave = false }) {
+  launch({ name, command, args, cwd, env, fresh, show = false, log = show ? null : join(LOGS, `${name}.log`), leave = false }) {
     if (this.#over) throw new Trouble('Stopped.');
     const running = launch({
       name, command, args, cwd, env, fresh, log,
@@ -169,7 +169,7 @@ export class Session {
     const running = this.launch(options);
     const { code, error } = await running.exited;
     if (this.#over) throw new Trouble('Stopped.');
-    if (code !== 0) throw new Trouble(error ? `${failed} (${error.message})` : failed, { tail: tail(running.log, lines) });
+    if (code !== 0) throw new Trouble(error ? `${failed} (${error.message})` : failed, { tail: running.log ? tail(running.log, lines) : '' });
     return running;
   }
 
