@@ -1,9 +1,9 @@
-import { and, asc, eq } from 'drizzle-orm';
+import { and, asc, eq, sql } from 'drizzle-orm';
 import type { Tx } from '~/server/database';
 import { notFound } from '~/server/errors';
 import type { Scope } from '~/server/scope';
 import { divisions, tournaments } from './tables';
-import type { DivisionRow } from './types';
+import type { DivisionRow, TournamentNavigation } from './types';
 
 /** The whole row of the tournament that the address names. @throws AppError not-found */
 export async function getTournament(tx: Tx, scope: Scope): Promise<typeof tournaments.$inferSelect> {
@@ -39,4 +39,20 @@ export async function getDivisionInScope(tx: Tx, scope: Scope, tournamentId: str
   const found = (await listDivisions(tx, scope, tournamentId)).find((d) => d.id === divisionId);
   if (!found) throw notFound();
   return found;
+}
+
+/** Counts for the rail, in one statement. */
+export async function loadNavigation(tx: Tx, scope: Scope): Promise<TournamentNavigation> {
+  const t = scope.tournamentId;
+  const { rows } = await tx.execute(sql`
+    select
+      (select count(*)::int from events e where e.org_id = ${scope.orgId} and e.tournament_id = ${t}) as events,
+      (select count(*)::int from events e where e.org_id = ${scope.orgId} and e.tournament_id = ${t} and e.state <> 'open') as handed_in,
+      (select count(*)::int from teams x where x.org_id = ${scope.orgId} and x.tournament_id = ${t} and x.state = 'confirmed') as teams,
+      (select count(*)::int from releases r where r.org_id = ${scope.orgId} and r.tournament_id = ${t}) as releases,
+      (select coalesce(json_agg(json_build_object('slug', e.slug, 'name', e.name, 'letter', d.letter) order by e.name, d.position), '[]'::json)
+         from memberships m join events e on e.org_id = m.org_id and e.id = m.event_id join divisions d on d.org_id = e.org_id and d.id = e.division_id
+        where m.org_id = ${scope.orgId} and m.person_id = ${scope.actor.personId} and m.role = 'leader' and m.state = 'active' and e.tournament_id = ${t}) as mine`);
+  const r = rows[0]! as { events: number; handed_in: number; teams: number; releases: number; mine: TournamentNavigation['mine'] };
+  return { events: r.events, handedIn: r.handed_in, teams: r.teams, releases: r.releases, mine: r.mine };
 }

@@ -14,3 +14,13 @@ export interface DivisionRow {
   shape: 'round' | 'square';
   position: number;
 }
+
+/** What the rail of a tournament's staff pages shows. */
+export interface TournamentNavigation {
+  events: number;
+  handedIn: number;
+  teams: number;
+  releases: number;
+  /** The events this person leads, by name. */
+  mine: { slug: string; name: string; letter: string }[];
+}
