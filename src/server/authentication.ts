@@ -21,6 +21,9 @@ export const IDLE_DAYS = 14;
 /** Signed out after this long, however busy. */
 export const ABSOLUTE_DAYS = 60;
 
+/** A session's last use is written down again once it is this old, in minutes: not with every request. */
+export const LAST_USE_MINUTES = 5;
+
 const DAY = 86_400_000;
 
 interface SessionAttributes {
@@ -55,20 +58,24 @@ class HashingAdapter implements Adapter {
     const { rows } = await pool().query(
       prepared(
         'session',
-        `select s.person_id, s.expires_at, s.created_at, s.device, p.name, p.email, p.email_verified_at, p.is_operator
+        `select s.person_id, s.expires_at, s.created_at, s.last_used_at, s.device, p.name, p.email, p.email_verified_at, p.is_operator
            from sessions s join people p on p.id = s.person_id where s.id = $1`,
         [hashToken(sessionId)],
       ),
     );
     const r = rows[0];
     if (!r) return [null, null];
+    const moment = now();
+    if (r.expires_at > moment && moment.getTime() - r.last_used_at.getTime() > LAST_USE_MINUTES * 60_000) {
+      await pool().query('update sessions set last_used_at = $2 where id = $1', [hashToken(sessionId), moment]);
+    }
     return [
       { id: sessionId, userId: r.person_id, expiresAt: r.expires_at, attributes: { createdAt: r.created_at, device: r.device } },
       { id: r.person_id, attributes: { name: r.name, email: r.email, emailVerifiedAt: r.email_verified_at, isOperator: r.is_operator } },
     ];
   }
   async setSession(session: DatabaseSession): Promise<void> {
-    await pool().query('insert into sessions (id, person_id, expires_at, created_at, device) values ($1, $2, $3, $4, $5)', [
+    await pool().query('insert into sessions (id, person_id, expires_at, created_at, last_used_at, device) values ($1, $2, $3, $4, $4, $5)', [
       hashToken(session.id),
       session.userId,
       session.expiresAt,
@@ -188,9 +195,15 @@ function decoy(): Promise<string> {
 /**
  * The secret part of a one-time link. Derived from the row's id and the service's secret, so that
  * a job can be tried again and send the same mail without the code ever standing in the queue.
+ * `device` is the browser's half: it shows that a link is opened where it was asked for.
  */
-export function deriveToken(purpose: 'verify' | 'reset' | 'invitation', id: string): string {
+export function deriveToken(purpose: 'verify' | 'reset' | 'change' | 'device' | 'invitation', id: string): string {
   return createHmac('sha256', environment().APP_SECRET).update(`${purpose}:${id}`).digest('base64url');
+}
+
+/** The key under which tries are counted: says nothing of the address or person it stands for. */
+export function throttleKey(limit: string, subject: string): string {
+  return createHmac('sha256', environment().APP_SECRET).update(`throttle:${limit}:${subject}`).digest('base64url');
 }
 
 /** Compare two texts in time that does not depend on where they differ. */

@@ -32,13 +32,15 @@ export const sessions = pgTable(
     expiresAt: at('expires_at').notNull(),
     /** The absolute lifetime counts from here. */
     createdAt: at('created_at').notNull(),
+    /** Moves on with use, in steps of some minutes; shown to the session's owner. */
+    lastUsedAt: at('last_used_at').notNull().defaultNow(),
     /** What the device calls itself, shortened, so that its owner knows it again. */
     device: text('device').notNull().default(''),
   },
   (t) => [index('sessions_person').on(t.personId)],
 );
 
-/** Verification and reset codes. The code itself is derived from `id` and the service's secret; only its hash is here. */
+/** Verification, reset and change-of-address codes. The code itself is derived from `id` and the service's secret; only its hash is here. */
 export const oneTimeCodes = pgTable(
   'one_time_codes',
   {
@@ -46,8 +48,12 @@ export const oneTimeCodes = pgTable(
     personId: uuid('person_id')
       .notNull()
       .references(() => people.id, { onDelete: 'cascade' }),
-    purpose: text('purpose', { enum: ['verify', 'reset'] }).notNull(),
+    purpose: text('purpose', { enum: ['verify', 'reset', 'change'] }).notNull(),
     codeHash: text('code_hash').notNull(),
+    /** The address a `change` code is to prove. */
+    email: text('email'),
+    /** The path to go to once the code has done its work; empty for the person's own page. */
+    goesTo: text('goes_to').notNull().default(''),
     createdAt: at('created_at').notNull(),
     expiresAt: at('expires_at').notNull(),
     usedAt: at('used_at'),
