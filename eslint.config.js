@@ -79,7 +79,7 @@ export default tseslint.config(
         { type: 'feature-jobs', pattern: 'src/features/*/jobs.ts', mode: 'full', capture: ['feature'] },
         { type: 'feature-emails', pattern: 'src/features/*/emails/*', mode: 'full', capture: ['feature'] },
         { type: 'feature-components', pattern: 'src/features/*/components/**/*', mode: 'full', capture: ['feature'] },
-        { type: 'feature-plain', pattern: ['src/features/*/schema.ts', 'src/features/*/types.ts', 'src/features/*/constants.ts', 'src/features/*/policy.ts'], mode: 'full', capture: ['feature'] },
+        { type: 'feature-plain', pattern: ['src/features/*/schema.ts', 'src/features/*/types.ts', 'src/features/*/constants.ts', 'src/features/*/policy.ts', 'src/features/*/assembly.ts'], mode: 'full', capture: ['feature'] },
         { type: 'feature-test', pattern: 'src/features/**/*.test.{ts,tsx}', mode: 'full', capture: ['feature'] },
       ],
     },

@@ -23,6 +23,7 @@ const FEATURE_FILES: [RegExp, string][] = [
   [/^types\.ts$/, 'types'],
   [/^policy\.ts$/, 'who may'],
   [/^queries\.ts$/, 'reads; need a scope'],
+  [/^assembly\.ts$/, 'pure: puts together what several queries give, so that it can be tested and measured by itself'],
   [/^loaders\.ts$/, 'what a page shows'],
   [/^jobs\.ts$/, 'queue handlers'],
   [/^constants\.ts$/, 'constants'],

@@ -63,6 +63,8 @@ export interface EventPart<Setup, Key extends string, Value> {
   describe(setup: Setup, value: Value): string;
   /** The value and what is worked out from it (both ways round, say), for the people who run the event. */
   workings(setup: Setup, value: Value): Line[];
+  /** What a value that was never kept counts as, once the office settles it so. It passes the schema. */
+  nothing(setup: Setup): Value;
   csv: PartCsv<Setup, Value> | null;
 }
 

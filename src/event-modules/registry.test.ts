@@ -77,6 +77,12 @@ describe.each(everySetup)('%s', (_, module, setup) => {
     expect(module.tieBreakWords(setup).length).toBeGreaterThan(0);
   });
 
+  it('has a value that counts as nothing for every part, and it is complete', () => {
+    const parts = Object.fromEntries(module.parts.map((part) => [part.key, part.nothing(setup)]));
+    for (const part of module.parts) expect(checkValue(part.schema(setup), parts[part.key])).toEqual({ ok: true, value: parts[part.key] });
+    expect(module.score(setup, parts)).toMatchObject({ complete: true, missing: [], faults: [] });
+  });
+
   it('has six sample teams whose parts pass their schemas and are described', () => {
     expect(teams.length).toBeGreaterThanOrEqual(6);
     expect(module.sampleTeams(setup)).toEqual(teams);

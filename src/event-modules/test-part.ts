@@ -33,6 +33,7 @@ export function testPart<Setup>(shapeOf: (setup: Setup) => TestShape): EventPart
         }),
       ];
     },
+    nothing: () => ({ points: '0' }),
     csv: {
       fields,
       parseCsvRow: (setup, cells) => {

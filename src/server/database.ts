@@ -75,6 +75,17 @@ export function withScope<T>(scope: Scope, work: (tx: Tx) => Promise<T>): Promis
 }
 
 /**
+ * One SQL function as a transaction of its own, in one round trip. The function's first two parameters are the organization and
+ * the person, and it sets the scope from them itself, as `withScope` does for a transaction of several statements.
+ *
+ * @param call 'keep_reading($1, $2, $3)': the whole call; $1 and $2 are supplied from the scope, `values` follow
+ */
+export async function callInScope<T>(scope: Scope, name: string, call: string, values: unknown[]): Promise<T> {
+  const { rows } = await pool().query(prepared(name, `select ${call} as r`, [scope.orgId, scope.actor.personId, ...values]));
+  return rows[0]!.r as T;
+}
+
+/**
  * A transaction for one person outside any organization: their own memberships and invitations,
  * and the tables that belong to no organization.
  */

@@ -27,6 +27,7 @@ const runPart: EventPart<OpticsSetup, 'run', OpticsRun> = {
   schema: opticsRunSchema,
   describe: describeRun,
   workings: runWorkings,
+  nothing: () => ({ reading: { kind: 'none' }, mirrorsUsed: 0, barriersUsed: 0 }),
   csv: null,
 };
 

@@ -8,6 +8,10 @@ export interface ReleasedEvent {
   /** Teams of the division, whatever their status. */
   fieldSize: number;
   /** Of the scored teams' scores, as shown (two decimals); null with fewer than one scored team. */
+  /** The heading of its scores: 'Score' or 'Points'. */
+  scoreLabel: string;
+  /** Who was scored, of the field. */
+  scored: number;
   quartiles: { q1: string; median: string; q3: string } | null;
   /** Columns of the parts of a score, in order. */
   columns: { key: string; header: string; type: 'number' | 'text' }[];
@@ -24,8 +28,8 @@ export interface ReleasedPlace {
   display: string | null;
   /** The exact score as 'p/q'; null when there is none. */
   exact: string | null;
-  /** The parts of the score, in the order of the event's columns. */
-  cells: (string | number | null)[];
+  /** The parts of the score, in the order of the event's columns; numbers as exact decimal text. */
+  cells: (string | null)[];
   /** Left out of the total as one of the worst. */
   dropped: boolean;
 }
@@ -36,7 +40,8 @@ export interface ReleasedTeam {
   name: string;
   schoolId: string;
   schoolName: string;
-  place: number;
+  /** Null where no event of the division counts. */
+  place: number | null;
   total: number;
   goesOn: boolean;
   /** Stands at the cut beside an equal: a person must decide who goes on. */
@@ -59,4 +64,25 @@ export interface ReleaseSnapshot {
   format: 1;
   rules: { dropWorst: number; advance: number; perSchool: number };
   divisions: ReleasedDivision[];
+}
+
+/** A release without its contents. */
+export interface ReleaseRow {
+  id: string;
+  number: number;
+  publicLine: string;
+  releasedAt: Date;
+  releasedBy: string;
+  publicFrom: Date;
+}
+
+/** A release with its contents. */
+export interface Release extends ReleaseRow {
+  snapshot: ReleaseSnapshot;
+}
+
+/** What stands in the way of a release, each with where it is put right. */
+export interface Obstacle {
+  words: string;
+  eventSlug: string | null;
 }
