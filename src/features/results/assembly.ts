@@ -137,17 +137,6 @@ export function placeWords(place: ReleasedPlace): string {
   return place.status === 'dns' ? 'did not start' : place.status === 'dq' ? 'disqualified' : String(place.place);
 }
 
-/** A file's name that any computer takes: 'larkwater-senior-release-2.csv'. */
-export function fileName(...parts: string[]): string {
-  return `${parts
-    .join('-')
-    .normalize('NFKD')
-    .replace(/[\u0300-\u036f]/g, '')
-    .toLowerCase()
-    .replace(/[^a-z0-9]+/g, '-')
-    .replace(/^-+|-+$/g, '')}.csv`;
-}
-
 /** A file: header and rows, for `writeCsv`. */
 export interface CsvFile {
   header: string[];

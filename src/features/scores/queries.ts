@@ -48,3 +48,21 @@ export async function listRevisions(tx: Tx, scope: Scope, eventId: string, teamI
     .orderBy(desc(readingRevisions.keptAt), desc(readingRevisions.version));
   return rows.map((r) => ({ ...r, keptAt: r.keptAt.toISOString() }));
 }
+
+/** Every value ever kept in a tournament, by event, team and part, oldest first. */
+export async function everyRevision(
+  tx: Tx,
+  scope: Scope,
+  tournamentId: string,
+): Promise<{ eventId: string; teamId: string; part: string; version: number; value: unknown; reason: string; keptAt: string; keptBy: string; stands: boolean }[]> {
+  const { rows } = await tx.execute(sql`
+    select v.event_id as "eventId", v.team_id as "teamId", v.part, v.version, v.value, v.reason, to_char(v.kept_at at time zone 'UTC', 'YYYY-MM-DD"T"HH24:MI:SS"Z"') as "keptAt",
+           p.name as "keptBy", r.version = v.version as stands
+      from reading_revisions v
+      join events e on e.org_id = v.org_id and e.id = v.event_id
+      join people p on p.id = v.kept_by
+      join readings r on r.org_id = v.org_id and r.event_id = v.event_id and r.team_id = v.team_id and r.part = v.part
+     where v.org_id = ${scope.orgId} and e.tournament_id = ${tournamentId}
+     order by e.name, v.event_id, v.team_id, v.part, v.version`);
+  return rows as never;
+}
