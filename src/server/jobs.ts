@@ -2,6 +2,7 @@ import PgBoss from 'pg-boss';
 import type { Tx } from './database';
 import { environment } from './environment';
 import { errorForLog, logger } from './logger';
+import { makeScope, type Scope } from './scope';
 import { singleton } from './singleton';
 
 /** What each queue's job carries: ids only, never a token, an address or a name. */
@@ -52,6 +53,11 @@ export async function enqueue<Q extends QueueName>(tx: Tx, queue: Q, data: JobDa
     ...options,
     db: { executeSql: (text: string, values: unknown[]) => tx.client.query(text, values) as never },
   });
+}
+
+/** The scope of a job in one organization: nobody acts, and no role is held. For queue handlers only. */
+export function jobScope(orgId: string): Scope {
+  return makeScope({ orgId, orgSlug: '', actor: { kind: 'job', personId: null, name: 'Fairlead' }, grants: [], tournamentId: null });
 }
 
 export type Handlers = { [Q in QueueName]: (data: JobData[Q], jobId: string) => Promise<void> };
