@@ -1,5 +1,6 @@
 import { readSessionCookie, validateSession } from './authentication';
 import { pool, prepared } from './database';
+import { newId } from './ids';
 import { makeScope, type Grant, type Scope } from './scope';
 
 /** Who is signed in. */
@@ -91,4 +92,18 @@ export async function resolveRequest(cookieHeader: string | null | undefined, or
     tournamentId: r.tournament?.id ?? null,
   });
   return out;
+}
+
+/**
+ * The scope in which somebody founds an organization: its id is made here, so whatever is done with it can reach nothing that
+ * exists already. For the command that creates an organization alone.
+ */
+export function foundingScope(person: SignedIn, slug: string): Scope {
+  return makeScope({
+    orgId: newId(),
+    orgSlug: slug,
+    actor: { kind: 'person', personId: person.personId, name: person.name },
+    grants: [{ role: 'owner', tournamentId: null, eventId: null, schoolId: null }],
+    tournamentId: null,
+  });
 }

@@ -20,5 +20,7 @@ export const LIMITS = {
   'code:address': { most: 60, minutes: 15 },
   'code:password': { most: 10, minutes: 60 },
   'password:person': { most: 10, minutes: 15 },
+  'organization:person': { most: 20, minutes: 1440 },
+  'invitation:organization': { most: 400, minutes: 60 },
 } as const satisfies Record<string, { most: number; minutes: number }>;
 export type LimitName = keyof typeof LIMITS;

@@ -1,0 +1,15 @@
+import { restorePerson } from '~/features/organizations/commands/suspend-person';
+import { only } from '~/server/access';
+import { endpoint } from '~/server/endpoint';
+import { notFound } from '~/server/errors';
+import { isId } from '~/server/ids';
+
+/** Give a suspended person their roles back. */
+export const POST = endpoint({
+  access: only('owner'),
+  handler: async ({ scope, org, params }) => {
+    if (!isId(params['person'])) throw notFound();
+    const { name } = await restorePerson(scope, params['person']);
+    return { goTo: `/${org.slug}/office/people/${params['person']}`, message: `${name} has their roles back.` };
+  },
+});
