@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { Fragment, useState } from 'react';
 import { ChoiceGroup } from '~/components/react/ChoiceGroup';
 import { DecimalField } from '~/components/react/DecimalField';
 import { TextField } from '~/components/react/TextField';
@@ -70,12 +70,12 @@ function BothWays({ setup, reading }: { setup: OpticsSetup; reading: unknown }) 
       </p>
       <dl className="definition num">
         {ways.map(([label, value, counts]) => (
-          <div key={label} className="contents">
+          <Fragment key={label}>
             <dt>{label}</dt>
             <dd>
               {mm(value)} {counts && <span className="tag ok">counts</span>}
             </dd>
-          </div>
+          </Fragment>
         ))}
       </dl>
     </div>
@@ -156,7 +156,7 @@ export function OpticsRunForm({ setup, draft, onChange, errors, onLeave, isDisab
         />
       )}
       {reading.kind && <BothWays setup={setup} reading={reading} />}
-      <div className="grid gap-6 sm:grid-cols-2">
+      <div className="grid items-start gap-6 sm:grid-cols-2">
         <DecimalField
           id="mirrorsUsed"
           label="Mirrors used"
@@ -187,7 +187,7 @@ export function OpticsRunForm({ setup, draft, onChange, errors, onLeave, isDisab
       <p className="small muted">
         <b>Your office’s rule:</b> {setup.barrierRule}
       </p>
-      <div className="grid gap-6 sm:grid-cols-2">
+      <div className="grid items-start gap-6 sm:grid-cols-2">
         <DecimalField
           id="timeUsedSeconds"
           label="Time used"

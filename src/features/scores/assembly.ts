@@ -103,3 +103,8 @@ export function assembleField(
     settled: findings.filter((f) => f.settlement),
   };
 }
+
+/** The school's name where the team's own does not say it: 'Wrenfield Academy 2' needs none. */
+export function schoolBeside(team: { name: string; schoolName: string }): string | null {
+  return team.name.toLowerCase().startsWith(team.schoolName.toLowerCase()) ? null : team.schoolName;
+}

@@ -3,7 +3,7 @@
  * is a rule of places: one dot an event, dots of one place stacked.
  */
 import { markup, raw, type Markup } from '~/components/markup';
-import { teamLabel } from '../../scores/assembly';
+import { schoolBeside, teamLabel } from '../../scores/assembly';
 import { placeWords } from '../assembly';
 import type { ReleasedDivision, ReleasedTeam } from '../types';
 
@@ -65,7 +65,7 @@ export function resultsTable(division: ReleasedDivision): string {
 <tbody>${division.rows.map(
     (team) => markup`<tr id="${teamLabel(division.letter, team.number)}"><td class="n">${team.place ?? '–'}</td><th scope="row"><span>${team.name}</span>${
       team.goesOn ? raw(' <span class="tag ok">goes on</span>') : team.cutTie ? raw(' <span class="tag wait">equal at the cut</span>') : ''
-    }${team.schoolName === team.name ? '' : markup`<small>${team.schoolName}</small>`}</th><td class="places-cell">${dots(team, most)}</td><td class="n"><b>${team.total}</b></td><td class="best">${bestTwo(division, team)}</td></tr>
+    }${schoolBeside(team) === null ? '' : markup`<small>${team.schoolName}</small>`}</th><td class="places-cell">${dots(team, most)}</td><td class="n"><b>${team.total}</b></td><td class="best">${bestTwo(division, team)}</td></tr>
 `,
   )}</tbody></table>`.html;
 }

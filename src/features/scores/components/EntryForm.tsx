@@ -1,5 +1,5 @@
 import { QueryClientProvider, useQuery, useQueryClient } from '@tanstack/react-query';
-import { useEffect, useMemo, useRef, useState, type ComponentType } from 'react';
+import { Fragment, useEffect, useMemo, useRef, useState, type ComponentType } from 'react';
 import { callApi } from '~/client/api';
 import { Outbox, type OutboxItem } from '~/client/outbox';
 import { queryClient } from '~/client/query';
@@ -171,7 +171,7 @@ function TeamList(props: {
   const shown = wanted === '' ? props.teams : props.teams.filter((t) => `${t.label} ${t.name} ${t.schoolName}`.toLowerCase().includes(wanted));
   return (
     <div className="stack gap-3">
-      {props.teams.length > 8 && <TextField id="find-team" type="search" label="Find a team" isOptional width="full" value={search} onChange={setSearch} />}
+      {props.teams.length > 8 && <TextField id="find-team" type="search" label="Find a team" width="full" value={search} onChange={setSearch} />}
       {shown.length === 0 && props.teams.length > 0 && <p className="muted">No team has “{search}” in its number, name or school.</p>}
       <ol className="entry-list">
         {shown.map((team) => {
@@ -201,10 +201,10 @@ function Lines({ lines }: { lines: { label: string; value: string }[] }) {
   return (
     <dl className="definition lined num">
       {lines.map((line) => (
-        <div key={line.label} className="contents">
+        <Fragment key={line.label}>
           <dt>{line.label}</dt>
           <dd>{line.value}</dd>
-        </div>
+        </Fragment>
       ))}
     </dl>
   );
@@ -357,6 +357,8 @@ function Desk(props: EntryFormHostProps) {
     void keep(checked.value, kept?.version ?? 0, reason);
   }
 
+  const inField = state.teams.filter((t) => readStatus(t.kept[STATUS_PART]?.value).status === 'scored');
+  const progress = module.parts.map((p) => `${p.name}: ${inField.filter((t) => t.kept[p.key]).length} of ${inField.length}`).join(' · ');
   const Form = forms?.[part];
   const showSummary = tried || refused.words.length > 0 || Object.keys(refused.fields).length > 0;
   const summary = [...Object.entries(errors).map(([path, message]) => ({ id: path === '' ? undefined : path, message })), ...refused.words.map((message) => ({ message }))];
@@ -408,6 +410,7 @@ function Desk(props: EntryFormHostProps) {
       )}
       <div className="entry" data-chosen={team ? '' : undefined}>
         <section className="entry-teams" aria-label="Teams">
+          {state.teams.length > 0 && <p className="muted num">Kept so far: {progress}</p>}
           <TeamList module={module} teams={state.teams} chosen={teamId} items={waiting} drafts={drafts} onChoose={(id) => choose(id)} />
         </section>
         <section className="entry-form" aria-label="Reading">
