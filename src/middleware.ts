@@ -22,7 +22,9 @@ export const onRequest = defineMiddleware(async (context, next) => {
     locals.tournament = found.tournament;
     locals.scope = found.scope;
     response = await next();
-    if (found.cookie) response.headers.append('set-cookie', found.cookie);
+    // What the page or endpoint says of the session's cookie stands: whoever just signed in also sent the one that has ended.
+    const name = found.cookie?.split('=')[0];
+    if (found.cookie && !response.headers.getSetCookie().some((c) => c.startsWith(`${name}=`))) response.headers.append('set-cookie', found.cookie);
   } catch (error) {
     locals.person ??= null;
     locals.org ??= null;

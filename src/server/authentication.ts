@@ -8,18 +8,16 @@
 import { DrizzlePostgreSQLAdapter } from '@lucia-auth/adapter-drizzle';
 import { drizzle } from 'drizzle-orm/node-postgres';
 import { Lucia, TimeSpan, type Adapter, type DatabaseSession, type DatabaseUser, type Session, type User } from 'lucia';
-import { createHash, createHmac, randomBytes, timingSafeEqual } from 'node:crypto';
+import { randomBytes } from 'node:crypto';
 import { Argon2id } from 'oslo/password';
 import { people, sessions } from '~/features/accounts/tables';
 import { now } from './clock';
 import { pool, prepared } from './database';
-import { environment, isHttps } from './environment';
+import { isHttps } from './environment';
 import { singleton } from './singleton';
+import { ABSOLUTE_DAYS, hashToken, IDLE_DAYS } from './tokens';
 
-/** Signed in without a sign of life for this long: signed out. */
-export const IDLE_DAYS = 14;
-/** Signed out after this long, however busy. */
-export const ABSOLUTE_DAYS = 60;
+export { deriveToken, hashToken } from './tokens';
 
 /** A session's last use is written down again once it is this old, in minutes: not with every request. */
 export const LAST_USE_MINUTES = 5;
@@ -43,11 +41,6 @@ declare module 'lucia' {
     DatabaseSessionAttributes: SessionAttributes;
     DatabaseUserAttributes: PersonAttributes;
   }
-}
-
-/** SHA-256, hexadecimal: how session ids and one-time codes stand in the database. */
-export function hashToken(token: string): string {
-  return createHash('sha256').update(token).digest('hex');
 }
 
 /** Lucia's stock adapter keeps ids as they are; this one hashes them on the way in and reads in one prepared statement. */
@@ -190,25 +183,4 @@ export async function verifyPassword(hash: string | null, password: string): Pro
 
 function decoy(): Promise<string> {
   return singleton('decoy', () => argon2id.hash(randomBytes(24).toString('base64url')));
-}
-
-/**
- * The secret part of a one-time link. Derived from the row's id and the service's secret, so that
- * a job can be tried again and send the same mail without the code ever standing in the queue.
- * `device` is the browser's half: it shows that a link is opened where it was asked for.
- */
-export function deriveToken(purpose: 'verify' | 'reset' | 'change' | 'device' | 'invitation', id: string): string {
-  return createHmac('sha256', environment().APP_SECRET).update(`${purpose}:${id}`).digest('base64url');
-}
-
-/** The key under which tries are counted: says nothing of the address or person it stands for. */
-export function throttleKey(limit: string, subject: string): string {
-  return createHmac('sha256', environment().APP_SECRET).update(`throttle:${limit}:${subject}`).digest('base64url');
-}
-
-/** Compare two texts in time that does not depend on where they differ. */
-export function sameText(a: string, b: string): boolean {
-  const x = createHash('sha256').update(a).digest();
-  const y = createHash('sha256').update(b).digest();
-  return timingSafeEqual(x, y);
 }

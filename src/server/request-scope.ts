@@ -74,24 +74,28 @@ export async function resolveRequest(cookieHeader: string | null | undefined, or
       };
     }
   }
-  if (!isSlug(orgSlug)) return out;
+  return { ...out, ...(await resolvePlace(out.person, orgSlug, tournamentSlug)) };
+}
+
+/** What an address names and what this person may do there; all null when it names nothing. For pages that span organizations. */
+export async function resolvePlace(person: SignedIn | null, orgSlug?: string, tournamentSlug?: string): Promise<Pick<RequestScope, 'org' | 'tournament' | 'scope'>> {
+  if (!isSlug(orgSlug)) return { org: null, tournament: null, scope: null };
   const { rows } = await pool().query(
-    prepared('resolve_scope', 'select resolve_scope($1, $2, $3) as r', [orgSlug, isSlug(tournamentSlug) ? tournamentSlug : null, out.person?.personId ?? null]),
+    prepared('resolve_scope', 'select resolve_scope($1, $2, $3) as r', [orgSlug, isSlug(tournamentSlug) ? tournamentSlug : null, person?.personId ?? null]),
   );
   const r = rows[0]?.r as { org: OrgInfo; tournament: TournamentInfo | null; grants: Grant[] } | null;
-  if (!r) return out;
-  out.org = r.org;
-  out.tournament = r.tournament;
-  out.scope = makeScope({
-    orgId: r.org.id,
-    orgSlug: r.org.slug,
-    actor: out.person
-      ? { kind: 'person', personId: out.person.personId, name: out.person.name }
-      : { kind: 'public', personId: null, name: 'the public' },
-    grants: r.grants,
-    tournamentId: r.tournament?.id ?? null,
-  });
-  return out;
+  if (!r) return { org: null, tournament: null, scope: null };
+  return {
+    org: r.org,
+    tournament: r.tournament,
+    scope: makeScope({
+      orgId: r.org.id,
+      orgSlug: r.org.slug,
+      actor: person ? { kind: 'person', personId: person.personId, name: person.name } : { kind: 'public', personId: null, name: 'the public' },
+      grants: r.grants,
+      tournamentId: r.tournament?.id ?? null,
+    }),
+  };
 }
 
 /**

@@ -5,8 +5,8 @@ export const RESET_MINUTES = 60;
 /** A sign-up that nobody confirmed is forgotten after this many days. */
 export const UNCONFIRMED_DAYS = 30;
 
-export const PASSWORD_LEAST = 8;
-export const PASSWORD_MOST = 128;
+export const PASSWORD_LEAST = 12;
+export const PASSWORD_MOST = 256;
 
 /**
  * How often something may be tried: `most` tries in `minutes`, per key. Limits per client address

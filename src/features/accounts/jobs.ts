@@ -1,10 +1,11 @@
 import { now } from '~/server/clock';
-import { deleteExpiredSessions, deriveToken } from '~/server/authentication';
+import { deleteExpiredSessions } from '~/server/authentication';
 import { withPerson } from '~/server/database';
 import { environment } from '~/server/environment';
 import type { Handlers } from '~/server/jobs';
 import { logger } from '~/server/logger';
 import { sendMail } from '~/server/mail';
+import { deriveToken } from '~/server/tokens';
 import { RESET_MINUTES, VERIFY_HOURS } from './constants';
 import { ALREADY_SUBJECT, AlreadyHere } from './emails/already-here';
 import { CHANGE_SUBJECT, CHANGE_TOLD_SUBJECT, ChangeAddress, ChangeAddressTold } from './emails/change-address';

@@ -1,10 +1,15 @@
-import { and, desc, eq, gt, isNull, lt, ne, sql } from 'drizzle-orm';
-import { ABSOLUTE_DAYS, hashToken, throttleKey } from '~/server/authentication';
+import { and, desc, eq, gt, inArray, isNull, lt, ne, sql } from 'drizzle-orm';
 import { now } from '~/server/clock';
 import { withPerson, type Tx } from '~/server/database';
 import { AppError } from '~/server/errors';
+import { newId } from '~/server/ids';
 import { errorForLog, logger } from '~/server/logger';
-import { LIMITS, UNCONFIRMED_DAYS, type LimitName } from './constants';
+import type { Scope } from '~/server/scope';
+import { ABSOLUTE_DAYS, deriveToken, hashToken, throttleKey } from '~/server/tokens';
+import { teams } from '../entries/tables';
+import { addresses, invitations, memberships, organizations } from '../organizations/tables';
+import { tournaments } from '../tournaments/tables';
+import { LIMITS, RESET_MINUTES, UNCONFIRMED_DAYS, VERIFY_HOURS, type LimitName } from './constants';
 import { oneTimeCodes, people, sessions, throttles } from './tables';
 import type { CodePurpose, SessionRow } from './types';
 
@@ -98,6 +103,42 @@ export async function newestLiveCode(tx: Tx, personId: string, purpose: CodePurp
   return row ?? null;
 }
 
+/** Make a code; the mail's link is derived from the id that is returned. */
+export async function insertCode(tx: Tx, code: { personId: string; purpose: CodePurpose; email?: string; goesTo?: string }): Promise<string> {
+  const id = newId();
+  const minutes = code.purpose === 'reset' ? RESET_MINUTES : VERIFY_HOURS * 60;
+  await tx.insert(oneTimeCodes).values({
+    id,
+    ...code,
+    codeHash: hashToken(deriveToken(code.purpose, id)),
+    createdAt: now(),
+    expiresAt: new Date(now().getTime() + minutes * 60_000),
+  });
+  return id;
+}
+
+/** Use a code up. False when somebody else has done so meanwhile: of two at once, one wins. */
+export async function useCode(tx: Tx, id: string): Promise<boolean> {
+  const used = await tx.update(oneTimeCodes).set({ usedAt: now() }).where(and(eq(oneTimeCodes.id, id), isNull(oneTimeCodes.usedAt))).returning({ id: oneTimeCodes.id });
+  return used.length === 1;
+}
+
+/** End a person's codes of some purposes that were not used. */
+export async function endCodes(tx: Tx, personId: string, purposes: CodePurpose[]): Promise<void> {
+  await tx
+    .update(oneTimeCodes)
+    .set({ usedAt: now() })
+    .where(and(eq(oneTimeCodes.personId, personId), inArray(oneTimeCodes.purpose, purposes), isNull(oneTimeCodes.usedAt)));
+}
+
+/** The code whose mail is sent again to somebody who has not confirmed the address: the newest that works, or a new one. */
+export async function verifyCodeFor(tx: Tx, personId: string, goesTo = ''): Promise<string> {
+  const live = await newestLiveCode(tx, personId, 'verify');
+  if (!live) return insertCode(tx, { personId, purpose: 'verify', goesTo });
+  if (goesTo !== '') await tx.update(oneTimeCodes).set({ goesTo }).where(eq(oneTimeCodes.id, live.id));
+  return live.id;
+}
+
 /** A person's sessions that have not ended, last used first. */
 export async function listSessions(tx: Tx, personId: string): Promise<SessionRow[]> {
   return tx
@@ -105,6 +146,12 @@ export async function listSessions(tx: Tx, personId: string): Promise<SessionRow
     .from(sessions)
     .where(and(eq(sessions.personId, personId), gt(sessions.expiresAt, now()), gt(sessions.createdAt, new Date(now().getTime() - ABSOLUTE_DAYS * DAY))))
     .orderBy(desc(sessions.lastUsedAt));
+}
+
+/** End one session of a person; false when they have none of that id. */
+export async function endSessionOf(tx: Tx, personId: string, id: string): Promise<boolean> {
+  const gone = await tx.delete(sessions).where(and(eq(sessions.personId, personId), eq(sessions.id, id))).returning({ id: sessions.id });
+  return gone.length === 1;
 }
 
 /** End a person's sessions, all but the one kept (its hashed id), as part of the transaction. Returns how many. */
@@ -174,4 +221,41 @@ export async function deleteUnconfirmed(id: string): Promise<boolean> {
     logger().debug({ person: id, error: errorForLog(error) }, 'still named');
     return false;
   }
+}
+
+/** The addresses of the organizations a person belongs to, active or suspended, by name. In the person's own transaction. */
+export async function listOwnOrganizations(tx: Tx, personId: string): Promise<{ slug: string; name: string }[]> {
+  return tx
+    .selectDistinct({ slug: organizations.slug, name: organizations.name })
+    .from(memberships)
+    .innerJoin(organizations, eq(organizations.orgId, memberships.orgId))
+    .where(eq(memberships.personId, personId))
+    .orderBy(organizations.name, organizations.slug);
+}
+
+/** The open invitations to an address, and where each organization is found. In the transaction of the person who has the address. */
+export async function listOwnInvitations(tx: Tx, email: string): Promise<{ id: string; slug: string }[]> {
+  return tx
+    .select({ id: invitations.id, slug: addresses.slug })
+    .from(invitations)
+    .innerJoin(addresses, eq(addresses.orgId, invitations.orgId))
+    .where(and(sql`lower(${invitations.email}) = lower(${email})`, isNull(invitations.acceptedAt), isNull(invitations.revokedAt), gt(invitations.expiresAt, now())))
+    .orderBy(invitations.createdAt)
+    .limit(50);
+}
+
+/** For each school the address of the newest tournament in which it has a team. */
+export async function newestTournamentOf(tx: Tx, scope: Scope, schoolIds: string[]): Promise<Map<string, string>> {
+  const rows = await tx
+    .selectDistinctOn([teams.schoolId], { schoolId: teams.schoolId, slug: tournaments.slug })
+    .from(teams)
+    .innerJoin(tournaments, and(eq(tournaments.orgId, teams.orgId), eq(tournaments.id, teams.tournamentId)))
+    .where(and(eq(teams.orgId, scope.orgId), inArray(teams.schoolId, schoolIds), ne(teams.state, 'withdrawn')))
+    .orderBy(teams.schoolId, desc(tournaments.day));
+  return new Map(rows.map((r) => [r.schoolId, r.slug]));
+}
+
+/** Some addresses of organizations, for the first page of the demo. */
+export async function someAddresses(tx: Tx): Promise<string[]> {
+  return (await tx.select({ slug: addresses.slug }).from(addresses).orderBy(addresses.slug).limit(8)).map((r) => r.slug);
 }

@@ -34,5 +34,6 @@ export interface OpenInvitation {
   /** 'Director of Larkwater'. */
   label: string;
   href: string;
-  expiresAt: Date;
+  /** 'Sat 13 Mar', on the organization's calendar. */
+  until: string;
 }
