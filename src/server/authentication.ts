@@ -155,6 +155,11 @@ export async function endSession(id: string): Promise<string> {
   return lucia().createBlankSessionCookie().serialize();
 }
 
+/** The Set-Cookie value that clears the session's cookie. */
+export function blankSessionCookie(): string {
+  return lucia().createBlankSessionCookie().serialize();
+}
+
 /** End every session of a person (password changed, account suspended). */
 export async function endAllSessions(personId: string): Promise<void> {
   await lucia().invalidateUserSessions(personId);
