@@ -36,7 +36,7 @@ export function QuestionGroupsForm(props: {
       <p className="hint">{props.hint}</p>
       {errors[path] && <p className="field-error">{errors[path]}</p>}
       {groups.map((group, i) => (
-        <div key={i} className="grid items-start gap-3 sm:grid-cols-[1fr_10rem_auto]">
+        <div key={i} className="grid items-start gap-3 sm:grid-cols-[1fr_13rem_auto]">
           <TextField
             id={`${path}.${i}.name`}
             label={`Group ${i + 1}`}
@@ -51,7 +51,7 @@ export function QuestionGroupsForm(props: {
           <DecimalField id={`${path}.${i}.max`} label="Most points" value={group.max} error={errors[`${path}.${i}.max`]} step="0.5" onChange={(max) => set(i, { max })} />
           <div className="sm:pt-6">
             <Button tone="quiet" onPress={() => onChange(groups.filter((_, j) => j !== i))} isDisabled={props.isDisabled}>
-              {`Remove ${group.name.trim() || `group ${i + 1}`}`}
+              Remove<span className="sr-only"> {group.name.trim() || `group ${i + 1}`}</span>
             </Button>
           </div>
         </div>

@@ -1,6 +1,6 @@
 /** Puts together what the queries give: a release's frozen contents, and its files. Pure. */
 import { csvNumber, type CsvCell } from '~/domain/csv';
-import { fromRatioText, roundHalfUp } from '~/domain/exact';
+import { fromRatioText, toShortText } from '~/domain/exact';
 import { quartiles } from '~/domain/ranking/quartiles';
 import { teamTotals } from '~/domain/ranking/team-totals';
 import { getEventModule } from '~/event-modules/registry';
@@ -34,7 +34,7 @@ function releasedEvent({ event, field }: EventWithField): ReleasedEvent {
     fieldSize: field.rows.length,
     scored: scores.length,
     scoreLabel: module.scoreScale(event.setup).label,
-    quartiles: q && { q1: roundHalfUp(q.lower, 2), median: roundHalfUp(q.median, 2), q3: roundHalfUp(q.upper, 2) },
+    quartiles: q && { q1: toShortText(q.lower), median: toShortText(q.median), q3: toShortText(q.upper) },
     columns: module.resultColumns(event.setup),
   };
 }

@@ -31,8 +31,8 @@ function Effect({ module, setup, before }: { module: AnyEventModule; setup: unkn
   }, [module, before]);
   const first = module.score(setup, parts.get(rows[0]?.id ?? '') ?? {});
   return (
-    <div className="table-wrap" role="region" aria-label="Sample teams" tabIndex={0}>
-      <table>
+    <div className="table-scroll" role="region" aria-label="Sample teams" tabIndex={0}>
+      <table className="table dense">
         <caption className="sr-only">What this set-up does to six invented teams</caption>
         <thead>
           <tr>

@@ -47,6 +47,11 @@ function dots(team: ReleasedTeam, most: number): Markup {
   return markup`<svg class="places" viewBox="0 0 ${WIDTH} ${ROW}" aria-hidden="true"><path d="M6 ${ROW - 0.5}H${WIDTH - 6}"></path>${drawn}</svg>`;
 }
 
+/** One team's places on a rule of its own, for the school's page. */
+export function teamPlaces(team: ReleasedTeam, most: number): string {
+  return markup`<div class="places-wide">${dots(team, most)}${scale(most)}</div>`.html;
+}
+
 function bestTwo(division: ReleasedDivision, team: ReleasedTeam): Markup {
   const best = team.events
     .map((p, i) => ({ p, name: division.events[i]!.name }))
