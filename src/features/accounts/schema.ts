@@ -42,7 +42,8 @@ export const addressInput = z.strictObject({ email });
 /** The password is asked for only where the link is opened on another device. */
 export const verifyInput = z.strictObject({ password: presentPassword.optional() });
 
-export const resetInput = z.strictObject({ password: newPassword });
+/** The address stands in the form for password managers; the link says whose password it is. */
+export const resetInput = z.strictObject({ password: newPassword, username: z.string().max(254).optional() });
 
 export const nameInput = z.strictObject({ name });
 
