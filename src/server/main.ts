@@ -76,7 +76,7 @@ async function pages(req: IncomingMessage, res: ServerResponse): Promise<void> {
   });
   const raw = { writeHead: res.writeHead.bind(res), end: res.end.bind(res) };
   await new Promise<void>((resolve) => compress(req as never, res as never, () => resolve()));
-  if (req.method === 'GET') captureInto(req, res, raw);
+  if (req.method === 'GET' || req.method === 'HEAD') captureInto(req, res, raw);
   await handler(req, res, undefined, locals);
 }
 
