@@ -1,8 +1,9 @@
 import { z } from 'zod';
 
-const id = z.union([z.literal(''), z.string().regex(/^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/)], 'Choose one from the list.').default('');
+const id = z.union([z.literal(''), z.string().regex(/^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/, 'Choose one from the list.')], 'Choose one from the list.').default('');
 const day = z
-  .union([z.literal(''), z.string().regex(/^\d{4}-\d{2}-\d{2}$/).refine((d) => !Number.isNaN(Date.parse(`${d}T00:00:00Z`)))], 'Choose a day.')
+  .string()
+  .refine((d) => d === '' || (/^\d{4}-\d{2}-\d{2}$/.test(d) && !Number.isNaN(Date.parse(`${d}T00:00:00Z`))), 'Choose a day.')
   .default('');
 
 export const auditFilterInput = z.strictObject({

@@ -35,7 +35,7 @@ export type UpdateOrganization = z.infer<typeof updateOrganizationInput>;
 
 /** A place that was left out comes as nothing or as an empty text, with and without script. */
 const place = z
-  .union([z.literal(''), z.null(), z.string().regex(/^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/)], 'Choose one from the list.')
+  .union([z.literal(''), z.null(), z.string().regex(/^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/, 'Choose one from the list.')], 'Choose one from the list.')
   .optional()
   .transform((v) => v || null);
 
