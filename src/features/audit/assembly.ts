@@ -115,7 +115,7 @@ const short = (s: string): string => (s.length > MOST ? `${s.slice(0, MOST - 1)}
 
 /** Any value on one line: '{"points":42,"order":[1,2]}' as 'points 42, order 1 2'. */
 function flat(value: unknown): string {
-  if (Array.isArray(value)) return value.map(flat).join(' ');
+  if (Array.isArray(value)) return value.map(flat).join(value.some((v) => typeof v === 'string') ? '; ' : ' ');
   if (value !== null && typeof value === 'object') {
     return Object.entries(value as Detail)
       .map(([k, v]) => `${k} ${flat(v)}`)
