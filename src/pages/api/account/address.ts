@@ -8,6 +8,6 @@ export const POST = endpoint({
   input: changeAddressInput,
   handler: async ({ person, input }) => {
     await changeAddress(person, input);
-    return { goTo: '/account?said=address', message: `A mail is on its way to ${input.email}.` };
+    return { goTo: '/account?said=address' };
   },
 });
