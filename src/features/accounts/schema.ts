@@ -33,6 +33,9 @@ const next = z
 export const signUpInput = z.strictObject({ name, email, password: newPassword, next });
 export type SignUp = z.infer<typeof signUpInput>;
 
+/** Signing out on the way to signing in as somebody else. */
+export const signOutInput = z.strictObject({ next });
+
 export const signInInput = z.strictObject({ email, password: presentPassword, next });
 export type SignIn = z.infer<typeof signInInput>;
 
