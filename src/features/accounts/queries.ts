@@ -1,4 +1,5 @@
 import { and, desc, eq, gt, inArray, isNull, lt, ne, sql } from 'drizzle-orm';
+import { networkOf } from '~/server/client-address';
 import { now } from '~/server/clock';
 import { withPerson, type Tx } from '~/server/database';
 import { AppError } from '~/server/errors';
@@ -163,6 +164,8 @@ export async function endSessionsOf(tx: Tx, personId: string, keep?: string): Pr
   return gone.length;
 }
 
+const tryKey = (limit: LimitName, subject: string) => throttleKey(limit, limit.endsWith(':address') ? networkOf(subject) : subject);
+
 /**
  * Count one try, in a transaction of its own, so that it is counted whatever follows.
  *
@@ -173,7 +176,7 @@ export async function countTry(limit: LimitName, subject: string, words: string)
   const { most, minutes } = LIMITS[limit];
   const { rows } = await withPerson(null, (tx) =>
     tx.execute<{ allowed: boolean; retry_after: number }>(
-      sql`select allowed, retry_after from count_try(${throttleKey(limit, subject)}, ${most}, make_interval(mins => ${minutes}), ${now().toISOString()}::timestamptz)`,
+      sql`select allowed, retry_after from count_try(${tryKey(limit, subject)}, ${most}, make_interval(mins => ${minutes}), ${now().toISOString()}::timestamptz)`,
     ),
   );
   const row = rows[0]!;
@@ -185,7 +188,7 @@ export async function countTry(limit: LimitName, subject: string, words: string)
 
 /** Take back what was counted for a try that was right: `all` of the key's, or that one. */
 export async function forgiveTry(limit: LimitName, subject: string, all = false): Promise<void> {
-  const key = throttleKey(limit, subject);
+  const key = tryKey(limit, subject);
   await withPerson(null, (tx) =>
     all ? tx.delete(throttles).where(eq(throttles.key, key)) : tx.update(throttles).set({ count: sql`greatest(${throttles.count} - 1, 0)` }).where(eq(throttles.key, key)),
   );
