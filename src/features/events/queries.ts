@@ -1,4 +1,4 @@
-import { and, asc, eq } from 'drizzle-orm';
+import { and, asc, eq, ne } from 'drizzle-orm';
 import type { Tx } from '~/server/database';
 import { notFound } from '~/server/errors';
 import type { Scope } from '~/server/scope';
@@ -68,4 +68,14 @@ export async function getEventInScope(tx: Tx, scope: Scope, id: string): Promise
   const [row] = await select(tx, scope, scope.tournamentId, null, id);
   if (!row) throw notFound();
   return row;
+}
+
+/** Everybody who is active in the organization other than as a coach alone, by name. */
+export async function listMembers(tx: Tx, scope: Scope): Promise<{ personId: string; name: string }[]> {
+  return tx
+    .selectDistinct({ personId: people.id, name: people.name })
+    .from(memberships)
+    .innerJoin(people, eq(people.id, memberships.personId))
+    .where(and(eq(memberships.orgId, scope.orgId), eq(memberships.state, 'active'), ne(memberships.role, 'coach')))
+    .orderBy(asc(people.name));
 }

@@ -3,7 +3,7 @@ import type { Tx } from '~/server/database';
 import { notFound } from '~/server/errors';
 import type { Scope } from '~/server/scope';
 import { divisions, tournaments } from './tables';
-import type { DivisionRow, TournamentNavigation } from './types';
+import type { DivisionRow, EventCounts, TournamentCounts, TournamentNavigation } from './types';
 
 /** The whole row of the tournament that the address names. @throws AppError not-found */
 export async function getTournament(tx: Tx, scope: Scope): Promise<typeof tournaments.$inferSelect> {
@@ -55,4 +55,42 @@ export async function loadNavigation(tx: Tx, scope: Scope): Promise<TournamentNa
         where m.org_id = ${scope.orgId} and m.person_id = ${scope.actor.personId} and m.role = 'leader' and m.state = 'active' and e.tournament_id = ${t}) as mine`);
   const r = rows[0]! as { events: number; handed_in: number; teams: number; releases: number; mine: TournamentNavigation['mine'] };
   return { events: r.events, handedIn: r.handed_in, teams: r.teams, releases: r.releases, mine: r.mine };
+}
+
+/** How far every event of a tournament is: two statements, whatever the number of events. Withdrawn teams do not count. */
+export async function countsOf(tx: Tx, scope: Scope, tournamentId: string): Promise<TournamentCounts> {
+  const [teamRows, eventRows] = await Promise.all([
+    tx.execute<{ division: string; confirmed: number; entered: number }>(sql`
+      select division_id as division, count(*) filter (where state = 'confirmed')::int as confirmed, count(*)::int as entered
+        from teams where org_id = ${scope.orgId} and tournament_id = ${tournamentId} group by division_id`),
+    tx.execute<{ event: string; parts: number; out: boolean; teams: number; last: Date | null }>(sql`
+      select event_id as event, parts, out, count(*)::int as teams, max(last) as last from (
+        select r.event_id, r.team_id,
+               count(*) filter (where r.part <> 'status')::int as parts,
+               coalesce(bool_or(r.part = 'status' and r.value->>'status' in ('dns', 'dq')), false) as out,
+               max(r.kept_at) as last
+          from readings r
+          join events e on e.org_id = r.org_id and e.id = r.event_id
+          join teams t on t.org_id = r.org_id and t.id = r.team_id and t.state = 'confirmed'
+         where r.org_id = ${scope.orgId} and e.tournament_id = ${tournamentId}
+         group by r.event_id, r.team_id) x
+       group by event_id, parts, out`),
+  ]);
+  const out: TournamentCounts = { confirmed: {}, entered: {}, events: {} };
+  for (const r of teamRows.rows) {
+    out.confirmed[r.division] = r.confirmed;
+    out.entered[r.division] = r.entered;
+  }
+  for (const r of eventRows.rows) {
+    const mine: EventCounts = (out.events[r.event] ??= { kept: 0, out: 0, full: {}, lastKeptAt: null });
+    const last = r.last === null ? null : new Date(r.last).toISOString();
+    if (last !== null && (mine.lastKeptAt === null || last > mine.lastKeptAt)) mine.lastKeptAt = last;
+    if (r.out) {
+      mine.out += r.teams;
+    } else {
+      mine.kept += r.parts * r.teams;
+      mine.full[r.parts] = (mine.full[r.parts] ?? 0) + r.teams;
+    }
+  }
+  return out;
 }

@@ -69,7 +69,15 @@ export type CreateTournament = z.infer<typeof createTournamentInput>;
 export const updateTournamentInput = z.strictObject(shape).superRefine(endAfterStart);
 export type UpdateTournament = z.infer<typeof updateTournamentInput>;
 
-export const dayPlanInput = z.strictObject({ lines: dayPlan });
+/** Lines as a form sends them: a list, or without script an object with numbered keys. Blank ones are passed over. */
+function writtenLines(value: unknown): unknown {
+  if (value === undefined || value === null || value === '') return [];
+  const list: unknown[] = Array.isArray(value) ? value : typeof value === 'object' ? Object.values(value) : [value];
+  const blank = (v: unknown) => v === undefined || v === null || (typeof v === 'string' && v.trim() === '');
+  return list.filter((line) => typeof line !== 'object' || line === null || !Object.values(line).every(blank));
+}
+
+export const dayPlanInput = z.strictObject({ lines: z.preprocess(writtenLines, dayPlan) });
 
 export const rulesInput = z.strictObject({
   dropWorst: whole(0, 10, 'Write how many of a team’s worst events are left out: 0 to 10.'),
@@ -92,3 +100,6 @@ export const divisionInput = z.strictObject({
   shape: z.enum(['round', 'square'], 'Choose the shape of its mark.'),
 });
 export type DivisionInput = z.infer<typeof divisionInput>;
+
+/** A form without fields. */
+export const emptyInput = z.strictObject({});

@@ -24,3 +24,23 @@ export interface TournamentNavigation {
   /** The events this person leads, by name. */
   mine: { slug: string; name: string; letter: string }[];
 }
+
+/** How far one event is, from one statement. */
+export interface EventCounts {
+  /** Readings of parts of teams that take part. */
+  kept: number;
+  /** Teams that did not start or are disqualified. */
+  out: number;
+  /** How many teams have so many parts: `full[2]` teams have two. */
+  full: Record<number, number>;
+  lastKeptAt: string | null;
+}
+
+/** Counts of a tournament by division and event. */
+export interface TournamentCounts {
+  /** Confirmed teams by division. */
+  confirmed: Record<string, number>;
+  /** Teams in any state by division. */
+  entered: Record<string, number>;
+  events: Record<string, EventCounts>;
+}
