@@ -17,6 +17,8 @@ interface World {
   tournament: string;
   event: string;
   division: string;
+  divisionId: string;
+  schoolId: string;
   teamId: string;
   secret: string;
   people: Record<Role, TestPerson>;
@@ -39,7 +41,7 @@ async function makeWorld(secret: string): Promise<World> {
       schoolId: role === 'coach' ? s.id : null,
     });
   }
-  return { org, tournament: t.slug, event: e.slug, division: d.slug, teamId: team.id, secret, people };
+  return { org, tournament: t.slug, event: e.slug, division: d.slug, divisionId: d.id, schoolId: s.id, teamId: team.id, secret, people };
 }
 
 let mine: World;
@@ -60,7 +62,11 @@ function address(route: Route, world: World): string {
     division: world.division,
     team: world.teamId,
     part: 'test',
+    school: world.schoolId,
+    person: world.people.coach.id,
+    number: '1',
   };
+  if (route.pattern.startsWith('/api/') && route.pattern.includes('[division]')) values['division'] = world.divisionId;
   return route.pattern.replace(/\[(?:\.\.\.)?(\w+)\]/g, (_, name: string) => values[name] ?? '018f0000-0000-7000-8000-000000000000');
 }
 
