@@ -149,6 +149,41 @@ function useLive(url: string, again: () => void): void {
   }, [url]);
 }
 
+/**
+ * Calls `mark` for a field that was left, but not while a pointer is down: a message that appears above a button just as it is
+ * pressed would move it away from under the finger.
+ */
+function useLeaving(mark: (field: string) => void): (field: string) => void {
+  const latest = useRef(mark);
+  latest.current = mark;
+  const pending = useRef<string[]>([]);
+  const isDown = useRef(false);
+  useEffect(() => {
+    const down = () => {
+      isDown.current = true;
+    };
+    const up = () => {
+      isDown.current = false;
+      const fields = pending.current;
+      pending.current = [];
+      // After the press itself has been dealt with.
+      if (fields.length > 0) setTimeout(() => fields.forEach((field) => latest.current(field)), 0);
+    };
+    window.addEventListener('pointerdown', down, true);
+    window.addEventListener('pointerup', up, true);
+    window.addEventListener('pointercancel', up, true);
+    return () => {
+      window.removeEventListener('pointerdown', down, true);
+      window.removeEventListener('pointerup', up, true);
+      window.removeEventListener('pointercancel', up, true);
+    };
+  }, []);
+  return (field) => {
+    if (isDown.current) pending.current.push(field);
+    else latest.current(field);
+  };
+}
+
 type PartState = 'kept' | 'waiting' | 'draft' | 'none';
 const STATE_WORDS: Record<PartState, string> = { kept: 'kept', waiting: 'on this device', draft: 'typed, not kept', none: 'open' };
 
@@ -301,6 +336,7 @@ function Desk(props: EntryFormHostProps) {
     history.replaceState(null, '', label ? `#${label}` : location.pathname);
     requestAnimationFrame(() => heading.current?.focus());
   }
+  const leave = useLeaving((field) => setLeft((before) => (before.includes(field) ? before : [...before, field])));
   const nextTeam = (() => {
     if (!team) return null;
     const at = state.teams.indexOf(team);
@@ -524,7 +560,7 @@ function Desk(props: EntryFormHostProps) {
                         draft={draft ?? {}}
                         errors={errors}
                         isDisabled={!takes}
-                        onLeave={(field) => setLeft((before) => (before.includes(field) ? before : [...before, field]))}
+                        onLeave={leave}
                         onChange={(next) => {
                           setRefused({ fields: {}, words: [] });
                           setDraft(draftKey, next);
