@@ -36,7 +36,7 @@ export function OrderForm<Key extends string>(props: {
               {props.words(key)}
             </span>
             <span className="flex gap-1">
-              <button type="button" className="btn small" data-at={i} data-by="-1" disabled={i === 0} aria-label={`Earlier: ${props.words(key)}`} onClick={() => move(i, -1)}>
+              <button type="button" className="btn small" data-at={i} data-by="-1" disabled={i === 0} aria-label={`Up: ${props.words(key)}`} onClick={() => move(i, -1)}>
                 Up
               </button>
               <button
@@ -45,7 +45,7 @@ export function OrderForm<Key extends string>(props: {
                 data-at={i}
                 data-by="1"
                 disabled={i === props.order.length - 1}
-                aria-label={`Later: ${props.words(key)}`}
+                aria-label={`Down: ${props.words(key)}`}
                 onClick={() => move(i, 1)}
               >
                 Down

@@ -174,7 +174,7 @@ export function watchPage(page: Page): string[] {
   const trouble: string[] = [];
   page.on('pageerror', (e) => trouble.push(`error: ${e.message}`));
   page.on('console', (m) => {
-    if (m.type() === 'error' && !/status of (401|403|404|409|413|422|429)/.test(m.text())) trouble.push(`console: ${m.text()}`);
+    if (m.type() === 'error' && !/status of (401|403|404|409|410|413|422|429)/.test(m.text())) trouble.push(`console: ${m.text()}`);
   });
   return trouble;
 }

@@ -96,11 +96,13 @@ export function eventTable(division: ReleasedDivision, index: number): string {
   const rows = division.rows
     .map((team) => ({ team, p: team.events[index]! }))
     .sort((a, b) => a.p.points - b.p.points || a.team.number - b.team.number);
-  return markup`<table class="table">
+  return markup`<table class="table results-event">
 <caption class="sr-only">${event.name}, ${division.name} division: places and scores</caption>
-<thead><tr><th scope="col" class="n">Place</th><th scope="col">Team</th><th scope="col">School</th><th scope="col" class="n">${event.scoreLabel}</th></tr></thead>
+<thead><tr><th scope="col" class="n">Place</th><th scope="col">Team</th><th scope="col" class="n">${event.scoreLabel}</th></tr></thead>
 <tbody>${rows.map(
-    ({ team, p }) => markup`<tr><td class="n">${p.status === 'scored' ? p.place : '–'}</td><th scope="row"><span class="num">${teamLabel(division.letter, team.number)}</span> ${team.name}</th><td>${team.schoolName}</td><td class="n">${
+    ({ team, p }) => markup`<tr><td class="n">${p.status === 'scored' ? p.place : '–'}</td><th scope="row"><span class="num">${teamLabel(division.letter, team.number)}</span> ${team.name}${
+      schoolBeside(team) === null ? '' : markup`<small>${team.schoolName}</small>`
+    }</th><td class="n">${
       p.status === 'scored' ? (p.display ?? '–') : placeWords(p)
     }</td></tr>
 `,
