@@ -9,6 +9,7 @@ import sirv from 'sirv';
 import { JOB_HANDLERS } from './job-handlers';
 import { clientAddress } from './client-address';
 import { closeDatabase } from './database';
+import { serveDirect } from './direct-endpoints';
 import { environment } from './environment';
 import { securityHeaders } from './headers';
 import { readiness } from './health';
@@ -44,6 +45,8 @@ function isStatic(url: string): boolean {
 
 async function serve(req: IncomingMessage, res: ServerResponse): Promise<void> {
   const url = req.url ?? '/';
+  const readOnly = req.method === 'GET' || req.method === 'HEAD';
+  if (readOnly && !stopping && sendKept(req, res)) return;
   for (const [name, value] of headers) res.setHeader(name, value);
   if (stopping) res.setHeader('connection', 'close');
   if (url === '/healthz') return plain(res, 200, 'ok');
@@ -51,8 +54,6 @@ async function serve(req: IncomingMessage, res: ServerResponse): Promise<void> {
     const state = await readiness(stopping);
     return plain(res, state.ready ? 200 : 503, JSON.stringify(state), 'application/json');
   }
-  const readOnly = req.method === 'GET' || req.method === 'HEAD';
-  if (readOnly && sendKept(req, res)) return;
   if (readOnly && isStatic(url)) {
     await new Promise<void>((resolve) => {
       res.on('close', resolve);
@@ -61,16 +62,14 @@ async function serve(req: IncomingMessage, res: ServerResponse): Promise<void> {
     return;
   }
   if (await serveStream(req, res)) return;
-  await pages(req, res);
+  const locals = { requestId: newId(), clientAddress: clientAddress(req.socket.remoteAddress ?? '', header(req, 'x-forwarded-for'), env.TRUSTED_PROXY_HOPS) };
+  if (await serveDirect(req, res, locals)) return;
+  await pages(req, res, locals);
 }
 
-async function pages(req: IncomingMessage, res: ServerResponse): Promise<void> {
+async function pages(req: IncomingMessage, res: ServerResponse, locals = { requestId: newId(), clientAddress: clientAddress(req.socket.remoteAddress ?? '', header(req, 'x-forwarded-for'), env.TRUSTED_PROXY_HOPS) }): Promise<void> {
   const began = performance.now();
-  const requestId = newId();
-  const locals = {
-    requestId,
-    clientAddress: clientAddress(req.socket.remoteAddress ?? '', header(req, 'x-forwarded-for'), env.TRUSTED_PROXY_HOPS),
-  };
+  const { requestId } = locals;
   res.on('finish', () => {
     log.debug({ request: requestId, method: req.method, status: res.statusCode, ms: Math.round(performance.now() - began) }, 'answered');
   });

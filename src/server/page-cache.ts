@@ -6,13 +6,15 @@
 import { createHash } from 'node:crypto';
 import type { IncomingMessage, ServerResponse } from 'node:http';
 import { brotliCompressSync, constants, gzipSync } from 'node:zlib';
+import { securityHeaders } from './headers';
 import { EVERYTHING, hear } from './live';
 import { singleton } from './singleton';
 
 interface Kept {
   etag: string;
-  type: string;
-  extra: Record<string, string>;
+  /** Complete headers, ready to write: names and values in turn. */
+  head304: string[];
+  heads: { br: string[]; gzip: string[]; identity: string[] };
   bodies: { br: Buffer; gzip: Buffer; identity: Buffer };
   topics: string[];
   /** Milliseconds since the epoch. */
@@ -34,6 +36,8 @@ const cache = singleton('page-cache', () => {
   return state;
 });
 
+const SECURITY = Object.entries(securityHeaders()).flat();
+
 /** Forget everything (tests). */
 export function emptyPageCache(): void {
   cache.entries.clear();
@@ -49,22 +53,14 @@ export function sendKept(req: IncomingMessage, res: ServerResponse): boolean {
   }
   const match = req.headers['if-none-match'];
   if (match !== undefined && (match === kept.etag || match === '*' || match.split(',').some((t) => t.trim().replace(/^W\//, '') === kept.etag))) {
-    res.writeHead(304, { ...kept.extra, etag: kept.etag, 'cache-control': 'public, no-cache', vary: 'accept-encoding' });
+    res.writeHead(304, kept.head304);
     res.end();
     return true;
   }
   const accepts = String(req.headers['accept-encoding'] ?? '');
   const encoding = /\bbr\b/.test(accepts) ? 'br' : /\bgzip\b/.test(accepts) ? 'gzip' : 'identity';
   const body = kept.bodies[encoding];
-  res.writeHead(200, {
-    ...kept.extra,
-    'content-type': kept.type,
-    'content-length': body.byteLength,
-    ...(encoding === 'identity' ? {} : { 'content-encoding': encoding }),
-    etag: kept.etag,
-    'cache-control': 'public, no-cache',
-    vary: 'accept-encoding',
-  });
+  res.writeHead(200, kept.heads[encoding]);
   res.end(req.method === 'HEAD' ? undefined : body);
   return true;
 }
@@ -105,17 +101,26 @@ export function captureInto(req: IncomingMessage, res: ServerResponse, raw: Pick
     const identity = Buffer.concat(chunks);
     const asked = keep;
     keep = null;
+    const etag = `"${createHash('sha256').update(identity).digest('base64url').slice(0, 22)}"`;
+    const type = String(headers['content-type'] ?? 'text/html; charset=utf-8');
+    const bodies = {
+      identity,
+      gzip: gzipSync(identity, { level: 6 }),
+      br: brotliCompressSync(identity, { params: { [constants.BROTLI_PARAM_QUALITY]: 5 } }),
+    };
+    const common = [
+      ...SECURITY,
+      ...Object.entries(headers).flatMap(([n, v]) => (n === 'content-disposition' || n === 'link' ? [n, String(v)] : [])),
+      'etag', etag, 'cache-control', 'public, no-cache', 'vary', 'accept-encoding',
+    ];
+    const head = (encoding: keyof typeof bodies) => [
+      ...common, 'content-type', type, 'content-length', String(bodies[encoding].byteLength), ...(encoding === 'identity' ? [] : ['content-encoding', encoding]),
+    ];
     const kept: Kept = {
-      etag: `"${createHash('sha256').update(identity).digest('base64url').slice(0, 22)}"`,
-      type: String(headers['content-type'] ?? 'text/html; charset=utf-8'),
-      extra: Object.fromEntries(
-        Object.entries(headers).filter(([n]) => n === 'content-disposition' || n === 'link').map(([n, v]) => [n, String(v)]),
-      ),
-      bodies: {
-        identity,
-        gzip: gzipSync(identity, { level: 6 }),
-        br: brotliCompressSync(identity, { params: { [constants.BROTLI_PARAM_QUALITY]: 5 } }),
-      },
+      etag,
+      bodies,
+      head304: common,
+      heads: { br: head('br'), gzip: head('gzip'), identity: head('identity') },
       topics: asked.topics,
       until: Math.min(Date.now() + LONGEST_MS, asked.until ? Date.parse(asked.until) : Infinity),
     };
@@ -124,6 +129,8 @@ export function captureInto(req: IncomingMessage, res: ServerResponse, raw: Pick
     res.writeHead = raw.writeHead;
     res.write = write as typeof res.write;
     res.end = raw.end;
+    // The kept answer brings all its headers itself.
+    for (const name of res.getHeaderNames()) res.removeHeader(name);
     sendKept(req, res);
     // Something changed while the page was being made: it is sent, not kept.
     if (cache.generation !== generation) cache.entries.delete(req.url!);

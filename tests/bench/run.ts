@@ -228,11 +228,12 @@ select keep_reading('${org.id}', '${org.owner.id}', '${spare[1]!.id}', 1, ('0000
   });
   const baseKb = brotliCompressSync(base.outputFiles[0]!.contents).byteLength / 1000;
   const browser = await chromium.launch({ executablePath: process.env['CHROMIUM'] ?? '/usr/bin/chromium', args: ['--no-sandbox', '--disable-gpu'] });
-  const context = await browser.newContext({ baseURL: url });
   const [name, value] = cookie.split(';')[0]!.split('=') as [string, string];
-  await context.addCookies([{ name, value, url }]);
   await admin.query(`update events set setup_locked_at = null where id = $1`, [spare[1]!.id]);
   const scripts = async (path: string) => {
+    // A context of its own: nothing is in the cache.
+    const context = await browser.newContext({ baseURL: url });
+    await context.addCookies([{ name, value, url }]);
     const p = await context.newPage();
     let bytes = 0;
     const waiting: Promise<void>[] = [];
@@ -243,7 +244,7 @@ select keep_reading('${org.id}', '${org.owner.id}', '${spare[1]!.id}', 1, ('0000
     await p.waitForFunction(() => !document.querySelector('astro-island[ssr]') && !document.body.innerText.includes('Loading the form…'));
     await p.waitForTimeout(500);
     await Promise.all(waiting);
-    await p.close();
+    await context.close();
     return bytes / 1000;
   };
   const shot = await world.makeEvent(org, { tournamentId: t.id, divisionId: d.id, moduleKey: 'optics-shoot', setup: (await import('~/event-modules/optics-shoot/module')).opticsShoot.setup.defaults(), locked: true, name: 'Shoot' });
