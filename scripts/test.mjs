@@ -9,7 +9,7 @@
  * The last line is `N passed, N failed` (and `N skipped` if any): vitest's tests, and one for each other check.
  */
 import { randomBytes } from 'node:crypto';
-import { existsSync, mkdirSync, readFileSync, rmSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { basename, join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
@@ -210,7 +210,7 @@ function stop() {
   return stopping;
 }
 
-function summary() {
+function summary({ only, forVitest }) {
   const sum = (key) => results.reduce((total, result) => total + result[key], 0);
   const width = Math.max(0, ...results.map(({ name }) => name.length));
   progress.say('');
@@ -220,6 +220,8 @@ function summary() {
     progress.line(`${name.padEnd(width)}  ${words}`, ms);
   }
   progress.line(`altogether`, Date.now() - progress.began);
+  // For `npm run bench`, which does not run the tests itself.
+  if (only === null && forVitest.length === 0) writeFileSync(join(LOCAL, 'test-duration.json'), JSON.stringify({ seconds: Math.round((Date.now() - progress.began) / 100) / 10 }));
   progress.say(`\n${sum('passed')} passed, ${sum('failed')} failed${sum('skipped') ? `, ${sum('skipped')} skipped` : ''}`);
   return sum('failed') === 0;
 }
@@ -242,7 +244,7 @@ async function main() {
     results.push({ name: 'getting ready', ms: Date.now() - progress.began, passed: 0, failed: 1, skipped: 0 });
   }
   await stop().catch(report);
-  process.exit(summary() && !process.exitCode ? 0 : 1);
+  process.exit(summary(wanted) && !process.exitCode ? 0 : 1);
 }
 
 await main().catch(report);

@@ -22,6 +22,8 @@ interface Rules {
   module: AnyEventModule;
   setup: unknown;
   setupVersion: number;
+  /** By part, made when first asked for: making one costs more than using it. */
+  schemas: Map<string, Parameters<typeof checkValue<unknown>>[0]>;
 }
 
 const rulesKept = singleton('keep-reading-rules', () => new Map<string, Rules>());
@@ -30,7 +32,7 @@ const MOST_RULES = 500;
 async function readRules(scope: Scope, eventSlug: string): Promise<Rules> {
   const event = await withScope(scope, (tx) => getEventBySlug(tx, scope, eventSlug));
   const module = getEventModule(event.moduleKey);
-  const rules: Rules = { eventId: event.id, tournamentId: event.tournamentId, module, setup: event.setup, setupVersion: event.setupVersion };
+  const rules: Rules = { eventId: event.id, tournamentId: event.tournamentId, module, setup: event.setup, setupVersion: event.setupVersion, schemas: new Map() };
   if (rulesKept.size >= MOST_RULES) rulesKept.delete(rulesKept.keys().next().value!);
   rulesKept.set(`${scope.orgId}/${scope.tournamentId}/${eventSlug}`, rules);
   return rules;
@@ -51,8 +53,9 @@ function setupChanged(setupVersion: number): AppError {
 
 /** The value in canonical form. @throws AppError bad-input with the fields as typed */
 function checkPart(rules: Rules, part: string, value: unknown, prefix = 'value'): unknown {
-  const schema = part === STATUS_PART ? statusSchema : rules.module.parts.find((p) => p.key === part)?.schema(rules.setup);
+  const schema = rules.schemas.get(part) ?? (part === STATUS_PART ? statusSchema : rules.module.parts.find((p) => p.key === part)?.schema(rules.setup));
   if (!schema) throw notFound();
+  rules.schemas.set(part, schema as never);
   const checked = checkValue<unknown>(schema, value);
   if (checked.ok) return checked.value;
   throw new AppError('bad-input', checked.fields.length === 1 ? checked.fields[0]!.message : `${checked.fields.length} things need another look.`, {
