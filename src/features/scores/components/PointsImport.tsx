@@ -5,7 +5,7 @@ import { ErrorSummary } from '~/components/react/ErrorSummary';
 import { FileDrop } from '~/components/react/FileDrop';
 import { Notice } from '~/components/react/Notice';
 import { Tag } from '~/components/react/Tag';
-import { decodeCsv, readCsv, type CsvTable } from '~/domain/csv-reader';
+import type * as CsvReader from '~/domain/csv-reader';
 import { getEventModule } from '~/event-modules/registry';
 import type { EntryState, EntryTeam } from '../types';
 
@@ -42,7 +42,10 @@ function findTeam(teams: readonly EntryTeam[], cell: string): EntryTeam | null {
   return teams.find((t) => t.number === Number(number) && (letter === undefined || t.label.startsWith(letter))) ?? null;
 }
 
-function readFile(state: EntryState, text: string): { table: CsvTable; rows: ReadRow[] } {
+/** The reader of CSV files, fetched once somebody has a file. */
+type Reader = typeof CsvReader;
+
+function readFile(state: EntryState, text: string, { readCsv }: Reader): { table: CsvReader.CsvTable; rows: ReadRow[] } {
   const module = getEventModule(state.event.moduleKey);
   const part = module.parts.find((p) => p.key === PART)!;
   const csv = part.csv!;
@@ -87,12 +90,12 @@ function readFile(state: EntryState, text: string): { table: CsvTable; rows: Rea
 /** A file is read here, shown row by row, and kept whole or not at all. */
 export default function PointsImport({ initial, endpoint, base }: PointsImportProps) {
   const [state, setState] = useState(initial);
-  const [file, setFile] = useState<{ name: string; text: string } | null>(null);
+  const [file, setFile] = useState<{ name: string; text: string; reader: Reader } | null>(null);
   const [fault, setFault] = useState('');
   const [busy, setBusy] = useState(false);
   const [kept, setKept] = useState<number | null>(null);
   const [refused, setRefused] = useState<{ words: string[]; count: number }>({ words: [], count: 0 });
-  const read = useMemo(() => (file ? readFile(state, file.text) : null), [file, state]);
+  const read = useMemo(() => (file ? readFile(state, file.text, file.reader) : null), [file, state]);
   const wrong = read ? read.rows.filter((r) => r.state === 'wrong') : [];
   const problems = read?.table.problems ?? [];
   const toKeep = read ? read.rows.filter((r) => r.state === 'new' || r.state === 'change') : [];
@@ -107,8 +110,14 @@ export default function PointsImport({ initial, endpoint, base }: PointsImportPr
       return;
     }
     setFault('');
-    const text = decodeCsv(new Uint8Array(await chosen.arrayBuffer()));
-    setFile({ name: chosen.name, text });
+    try {
+      const reader = await import('~/domain/csv-reader');
+      setFile({ name: chosen.name, text: reader.decodeCsv(new Uint8Array(await chosen.arrayBuffer())), reader });
+    } catch {
+      setFile(null);
+      setFault('The file could not be read just now. Choose it again.');
+      return;
+    }
     try {
       setState(await callApi<EntryState>('GET', endpoint));
     } catch {
